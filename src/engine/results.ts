@@ -1,0 +1,135 @@
+import type { Measured } from '../numeric/measured.ts';
+
+/**
+ * The results of a test: what `results.json` holds, and what every screen, table and report is made from.
+ * Lengths in mm, frequencies in Hz, angles in degrees, times in s. Amplitudes are zero-to-peak of the fundamental.
+ */
+
+export const RESULTS_FORMAT = 'dwellbook-results';
+export const RESULTS_VERSION = 1;
+
+export type Verdict = 'steady' | 'settling' | 'beating' | 'drifting' | 'lost' | 'failed';
+
+export interface BudgetLine {
+  readonly source: string;
+  /** Standard uncertainty in mm. */
+  readonly u: number;
+  /** True where the error is the same for every dwell of the camera setup (scale). */
+  readonly common: boolean;
+}
+
+export interface ClipResult {
+  readonly id: string;
+  readonly file: string;
+  readonly frames: number;
+  readonly duration: number;
+  readonly codec: string;
+  readonly width: number;
+  readonly height: number;
+  /** Measured frame rate in true time, frames/s; null where it cannot be told. */
+  readonly frameRate: number | null;
+  readonly sha256: string | null;
+  readonly markers: readonly MarkerResult[];
+  readonly warnings: readonly string[];
+  readonly error: string | null;
+}
+
+export interface MarkerResult {
+  readonly id: string;
+  readonly role: 'response' | 'drive' | 'ground';
+  readonly lostFrames: number;
+  readonly doubtfulFrames: number;
+  readonly medianScore: number | null;
+  /** Expected standard uncertainty of one frame's position, px. */
+  readonly expectedUPx: number | null;
+}
+
+export interface DwellResult {
+  readonly configuration: string;
+  readonly id: string;
+  readonly clip: string | null;
+  readonly driveHz: number | null;
+  readonly frequency: Measured;
+  readonly amplitude: Measured;
+  readonly lag: Measured;
+  readonly driveAmplitude: Measured;
+  readonly gain: Measured;
+  /** Expanded uncertainty of the amplitude at 95 %, mm, and its coverage factor. */
+  readonly amplitudeU95: number | null;
+  readonly lagU95: number | null;
+  readonly coverageFactor: number | null;
+  /** Uncertainty of the amplitude that is not shared with other dwells, mm: the weight in a resonance fit. */
+  readonly independentU: number | null;
+  readonly amplitudePx: number | null;
+  readonly window: readonly [number, number] | null;
+  readonly frames: number;
+  readonly lostFrames: number;
+  readonly verdict: Verdict;
+  /** What the verdict means for the engineer, one sentence. */
+  readonly sentence: string;
+  readonly leftover: number | null;
+  /** True where the steady amplitude was told apart from the transient by the joint fit. */
+  readonly jointFit: boolean;
+  readonly transient: { readonly naturalHz: Measured; readonly dampingRatio: Measured } | null;
+  readonly harmonics: readonly number[];
+  readonly budget: readonly BudgetLine[];
+  readonly excluded: string | null;
+  readonly typed: boolean;
+  readonly codecLimited: boolean;
+  readonly warnings: readonly string[];
+  readonly error: string | null;
+}
+
+export interface RingDownResult {
+  readonly configuration: string;
+  readonly id: string;
+  readonly clip: string;
+  readonly naturalHz: Measured;
+  readonly dampingRatio: Measured;
+  readonly window: readonly [number, number] | null;
+  readonly frames: number;
+  readonly sentence: string;
+  readonly warnings: readonly string[];
+  readonly error: string | null;
+}
+
+export interface ResonanceResult {
+  readonly configuration: string;
+  readonly model: string;
+  readonly damping: 'viscous' | 'structural';
+  /** The model in plain signs. */
+  readonly formula: string;
+  /** What was fitted: amplitude alone, lag alone, or both together. */
+  readonly quantity: 'amplitude' | 'lag' | 'amplitude and lag';
+  readonly points: number;
+  readonly naturalHz: Measured;
+  readonly dampingRatio: Measured;
+  readonly q: Measured;
+  readonly peakHz: Measured;
+  readonly peakAmplitude: Measured;
+  readonly bandwidthHz: Measured;
+  readonly staticGain: Measured;
+  /** Unit of staticGain and peakAmplitude: mm, or 1 where the drive amplitude is known. */
+  readonly gainUnit: 'mm' | '1';
+  readonly stiffness: Measured;
+  readonly dampingCoefficient: Measured;
+  readonly intervals: Readonly<Record<string, readonly [number | null, number | null]>>;
+  /** Of static gain, natural frequency, damping ratio, in that order; null where nothing was fitted. */
+  readonly correlation: readonly (readonly number[])[] | null;
+  readonly chi2: number | null;
+  readonly dof: number | null;
+  readonly notes: readonly string[];
+  readonly warnings: readonly string[];
+  readonly error: string | null;
+}
+
+export interface Results {
+  readonly format: typeof RESULTS_FORMAT;
+  readonly version: typeof RESULTS_VERSION;
+  readonly program: string;
+  readonly test: string;
+  readonly clips: readonly ClipResult[];
+  readonly dwells: readonly DwellResult[];
+  readonly ringdowns: readonly RingDownResult[];
+  readonly resonances: readonly ResonanceResult[];
+}
