@@ -33,6 +33,19 @@ function toMatrix(values: Float64Array, rows: number, columns: number): Matrix {
   return Matrix.from1DArray(rows, columns, values);
 }
 
+/** Rounding may leave two mirrored entries apart by a digit; the decomposition wants them equal. */
+function toSymmetricMatrix(values: Float64Array, n: number): Matrix {
+  const matrix = toMatrix(values, n, n);
+  for (let row = 0; row < n; row++) {
+    for (let column = 0; column < row; column++) {
+      const mean = (values[row * n + column]! + values[column * n + row]!) / 2;
+      matrix.set(row, column, mean);
+      matrix.set(column, row, mean);
+    }
+  }
+  return matrix;
+}
+
 function toFlat(matrix: Matrix, columns = matrix.columns): Float64Array {
   const flat = new Float64Array(matrix.rows * columns);
   for (let row = 0; row < matrix.rows; row++) {
@@ -81,11 +94,11 @@ export function linearLeastSquares(
   target: Float64Array,
 ): LinearFit | null {
   if (target.length !== rows) throw new Error(`target of ${target.length} values for ${rows} rows`);
+  const scaled = toMatrix(design, rows, columns);
   if (rows < columns || columns === 0) return null;
   const norms = columnNorms(design, rows, columns);
   if (!norms.every((norm) => norm > 0 && Number.isFinite(norm))) return null;
 
-  const scaled = toMatrix(design, rows, columns);
   for (let row = 0; row < rows; row++) {
     for (let column = 0; column < columns; column++) {
       scaled.set(row, column, design[row * columns + column]! / norms[column]!);
@@ -140,7 +153,7 @@ export function linearLeastSquares(
  * @returns null where the matrix is not positive definite
  */
 export function solveSymmetric(matrix: Float64Array, n: number, target: Float64Array): Float64Array | null {
-  const cholesky = new CholeskyDecomposition(toMatrix(matrix, n, n));
+  const cholesky = new CholeskyDecomposition(toSymmetricMatrix(matrix, n));
   if (!cholesky.isPositiveDefinite()) return null;
   const solution = toFlat(cholesky.solve(Matrix.from1DArray(n, 1, target)));
   return solution.every(Number.isFinite) ? solution : null;
@@ -160,7 +173,7 @@ export function invertSymmetric(matrix: Float64Array, n: number): Float64Array |
     scale[k] = 1 / Math.sqrt(diagonal);
   }
   const scaled = matrix.map((value, index) => value * scale[Math.floor(index / n)]! * scale[index % n]!);
-  const cholesky = new CholeskyDecomposition(toMatrix(scaled, n, n));
+  const cholesky = new CholeskyDecomposition(toSymmetricMatrix(scaled, n));
   if (!cholesky.isPositiveDefinite()) return null;
   const inverse = toFlat(cholesky.solve(Matrix.eye(n, n)));
   for (let k = 0; k < inverse.length; k++) inverse[k]! *= scale[Math.floor(k / n)]! * scale[k % n]!;

@@ -7,7 +7,8 @@ import tQuantileOf from '@stdlib/stats-base-dists-t-quantile';
 const PRACTICALLY_NORMAL = 1e9;
 
 function requirePositive(degreesOfFreedom: number): void {
-  if (!(degreesOfFreedom > 0)) throw new Error(`degrees of freedom must be positive, not ${degreesOfFreedom}`);
+  if (!(degreesOfFreedom > 0))
+    throw new Error(`degrees of freedom must be positive, not ${degreesOfFreedom}`);
 }
 
 /**
@@ -19,7 +20,8 @@ function requirePositive(degreesOfFreedom: number): void {
  */
 export function studentTQuantile(probability: number, degreesOfFreedom: number): number {
   requirePositive(degreesOfFreedom);
-  if (!(probability > 0 && probability < 1)) throw new Error(`probability must lie in (0, 1), not ${probability}`);
+  if (!(probability > 0 && probability < 1))
+    throw new Error(`probability must lie in (0, 1), not ${probability}`);
   return tQuantileOf(probability, Math.min(degreesOfFreedom, PRACTICALLY_NORMAL));
 }
 
