@@ -1,0 +1,32 @@
+/**
+ * A marker's picture: what the tracker looks for. Plain data, so that it can be kept, cloned to a worker and used
+ * in other clips of the same camera setup. Patches are row by row, `widthPx * heightPx`, centred on a whole pixel.
+ * Grey values are DN on a scale of 0 to 255 whatever the bit depth of the frame.
+ */
+export interface Template {
+  /** Odd. */
+  readonly widthPx: number;
+  /** Odd. */
+  readonly heightPx: number;
+  /** The marked point in the frame the template was cut from, pixels. */
+  readonly markedXPx: number;
+  readonly markedYPx: number;
+  /** The marked point relative to the patch's centre pixel, each within +-0.5 px. */
+  readonly pointXPx: number;
+  readonly pointYPx: number;
+  /** Grey values as registered against: smoothed once by [1 2 1] where `smoothed`, mean not removed. */
+  readonly values: Float64Array;
+  /** Their gradients along x and y, DN per pixel. */
+  readonly gradientX: Float64Array;
+  readonly gradientY: Float64Array;
+  /** Whether values are smoothed by [1 2 1] in x and y, and frames must be alike. */
+  readonly smoothed: boolean;
+  /** Grey values before smoothing, for searches. */
+  readonly raw: Float32Array;
+  /** Standard deviation of the noise of the frame it was cut from, DN. */
+  readonly noiseDn: number;
+  /** Number of frames averaged in it; 1 for a cut one. */
+  readonly framesAveraged: number;
+  /** Distance to the nearest place that looks alike in the frame it was cut from, px; null where none does. */
+  readonly aliasPx: number | null;
+}
