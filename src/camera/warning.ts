@@ -1,0 +1,46 @@
+/** Every caution that camera physics or scaling can raise; hosts may group or hide by code, never by sentence. */
+export type WarningCode =
+  | 'alias-folded'
+  | 'alias-refused'
+  | 'alias-unknown'
+  | 'axis-disagrees'
+  | 'axis-not-straight'
+  | 'axis-uncertain'
+  | 'below-floor'
+  | 'codec-limited'
+  | 'exposure-long'
+  | 'exposure-too-long'
+  | 'exposure-unknown'
+  | 'few-frames'
+  | 'frequency-mismatch'
+  | 'harmonic-folded'
+  | 'marker-saturated'
+  | 'marker-smeared'
+  | 'marker-smooth'
+  | 'parallax-large'
+  | 'plane-residual'
+  | 'rolling-shutter-strong'
+  | 'rolling-shutter-unknown'
+  | 'scale-short'
+  | 'shake-not-removed'
+  | 'slow-motion-likely'
+  | 'stamps-coarse'
+  | 'stamps-irregular'
+  | 'tilt-large';
+
+/** A caution: `sentence` says what was found and what to do about it, for the engineer at the bench. */
+export interface Warning {
+  readonly code: WarningCode;
+  readonly sentence: string;
+}
+
+/**
+ * A factor to multiply a seen amplitude by, to get nearer the true one.
+ * `factor` is null where no honest factor exists (the warning then says why); `u` is the standard
+ * uncertainty of the factor (k = 1, dimensionless), null exactly when `factor` is.
+ */
+export interface Correction {
+  readonly factor: number | null;
+  readonly u: number | null;
+  readonly warning: Warning | null;
+}
