@@ -1,0 +1,131 @@
+import { invertSymmetric } from '../numeric/linear-algebra.ts';
+import type { Registration } from './registration.ts';
+import { derivativeNoiseGain, interpolatedNoiseGain } from './spline-noise-gain.ts';
+import { steepestDescent } from './steepest-descent.ts';
+import type { Template } from './template.ts';
+
+/**
+ * The least standard uncertainty with which a shift along one axis can be known from one frame with white noise of
+ * standard deviation `sigmaDn`, px: sigma / sqrt(sum of squared gradients), the Cramer-Rao bound
+ * (D. Robinson and P. Milanfar, "Fundamental performance limits in image registration", IEEE Trans. Image Processing
+ * 13, 2004). The gradients must be those of the picture without noise; with noise in both of two frames the bound
+ * on their shift is sqrt(2) times this.
+ *
+ * @returns null where there is no gradient
+ */
+export function shiftBoundPx(sigmaDn: number, gradient: Float64Array): number | null {
+  let sum = 0;
+  for (const slope of gradient) sum += slope * slope;
+  return sum > 0 ? sigmaDn / Math.sqrt(sum) : null;
+}
+
+/** Covariance of a position, px squared. */
+export interface PositionCovariance {
+  readonly xx: number;
+  readonly xy: number;
+  readonly yy: number;
+}
+
+/**
+ * What noise does to the positions that a registrar finds with one template. It propagates white noise through the
+ * smoothing, the steepest-descent images and the Gauss-Newton matrix, less what the template's own noise adds to that
+ * matrix. Template noise itself shifts all frames alike and is not counted, nor is anything but noise.
+ */
+export class RegistrationUncertainty {
+  /** Covariance of a position for noise of 1 DN at gain 1; null where noise hides the texture along some direction. */
+  readonly perUnitNoise: PositionCovariance | null;
+  private readonly patchGainByPhase: Float64Array;
+  private readonly templateGain: number;
+
+  constructor(template: Template, parameters: 2 | 6) {
+    this.perUnitNoise = covariancePerUnitNoise(template, parameters);
+    const phases = 33;
+    this.patchGainByPhase = new Float64Array(phases);
+    for (let k = 0; k < phases; k++) {
+      this.patchGainByPhase[k] = interpolatedNoiseGain(k / (phases - 1), template.smoothed);
+    }
+    // An averaged template has been sampled at all phases, a cut one at whole pixels.
+    this.templateGain = interpolatedNoiseGain(0, template.smoothed) ** 2 / template.framesAveraged;
+  }
+
+  /**
+   * The noise of a frame's pixels before smoothing, DN, from what a registration left over, the template being as
+   * noisy as a frame. Whatever else the frame differs by is taken for noise, which makes uncertainties larger.
+   */
+  frameNoiseDn(registration: Registration): number {
+    const { residualDn, gain } = registration;
+    const share =
+      this.patchGain(registration.x) * this.patchGain(registration.y) + gain * gain * this.templateGain;
+    return residualDn / Math.sqrt(share);
+  }
+
+  /** Covariance of a registered position from its residual, px squared; null where `perUnitNoise` is. */
+  ofRegistration(registration: Registration): PositionCovariance | null {
+    const unit = this.perUnitNoise;
+    if (!unit || registration.gain <= 0) return null;
+    const factor = (this.frameNoiseDn(registration) / registration.gain) ** 2;
+    return { xx: unit.xx * factor, xy: unit.xy * factor, yy: unit.yy * factor };
+  }
+
+  private patchGain(position: number): number {
+    const last = this.patchGainByPhase.length - 1;
+    const fraction = position - Math.floor(position);
+    return this.patchGainByPhase[Math.round(fraction * last)]!;
+  }
+}
+
+function covariancePerUnitNoise(template: Template, parameters: 2 | 6): PositionCovariance | null {
+  const { widthPx, heightPx, smoothed, noiseDn, framesAveraged } = template;
+  const { images, hessian } = steepestDescent(template, parameters);
+  const count = widthPx * heightPx;
+
+  // Gauss-Newton matrix without the template's noise.
+  const noise =
+    ((count * noiseDn * noiseDn) / framesAveraged) *
+    derivativeNoiseGain(smoothed) *
+    interpolatedNoiseGain(0, smoothed);
+  const meanSquareX = (widthPx * widthPx - 1) / 12;
+  const meanSquareY = (heightPx * heightPx - 1) / 12;
+  const lever = [1, 1, meanSquareX, meanSquareY, meanSquareX, meanSquareY];
+  const quiet = Float64Array.from(hessian);
+  for (let k = 0; k < parameters; k++) quiet[k * parameters + k]! -= noise * lever[k]!;
+  const inverse = invertSymmetric(quiet, parameters);
+  if (!inverse) return null;
+
+  // Noise of 1 DN, smoothed, as seen by the steepest-descent images.
+  const seen = Array.from({ length: parameters }, (_, k) => {
+    const image = images.subarray(k * count, (k + 1) * count);
+    return smoothed ? spreadByBinomial(image, widthPx, heightPx) : image;
+  });
+  const covariance = (a: number, b: number): number => {
+    let sum = 0;
+    for (let i = 0; i < parameters; i++) {
+      for (let j = 0; j < parameters; j++) {
+        sum += inverse[a * parameters + i]! * dot(seen[i]!, seen[j]!) * inverse[j * parameters + b]!;
+      }
+    }
+    return sum;
+  };
+  return { xx: covariance(0, 0), xy: covariance(0, 1), yy: covariance(1, 1) };
+}
+
+/** The patch smoothed by [1 2 1] / 4 in x and y with a frame of zeros round it: (width + 2) * (height + 2). */
+function spreadByBinomial(image: Float64Array, width: number, height: number): Float64Array {
+  const spread = new Float64Array((width + 2) * (height + 2));
+  const taps = [0.25, 0.5, 0.25];
+  for (let y = 0; y < height; y++) {
+    for (let x = 0; x < width; x++) {
+      const value = image[y * width + x]!;
+      for (let j = 0; j < 3; j++) {
+        for (let k = 0; k < 3; k++) spread[(y + j) * (width + 2) + x + k]! += taps[j]! * taps[k]! * value;
+      }
+    }
+  }
+  return spread;
+}
+
+function dot(a: Float64Array, b: Float64Array): number {
+  let sum = 0;
+  for (let i = 0; i < a.length; i++) sum += a[i]! * b[i]!;
+  return sum;
+}
