@@ -54,19 +54,17 @@ export function exposureCorrection(
 /**
  * What an exposure that nobody stated could cost: it is at most the frame interval, so the true amplitude lies
  * between the seen one and 1 / sinc(f T) of it. Nothing is corrected (factor 1); u is the root mean square
- * of a loss anywhere in between, (1 / sinc(f T) - 1) / sqrt(3), so that 2 u covers the whole range.
+ * of a loss anywhere in between, (1 / sinc(f T) - 1) / sqrt(3), so that 2 u covers the whole range. An
+ * exposure beyond three quarters of a period would leave no marker to follow, so the range ends there: the
+ * amplitude is then little more than a lower bound, but the resonance can still be fitted, since every
+ * dwell of the setup is smeared nearly alike.
  */
 export function unknownExposure(frequencyHz: number, frameIntervalS: number): Correction {
   if (!(frequencyHz >= 0 && frameIntervalS > 0))
     throw new Error('frequency and frame interval must be positive');
-  const fraction = frequencyHz * frameIntervalS;
-  if (fraction > REFUSED_FRACTION) return { factor: null, u: null, warning: needed(fraction) };
-  const loss = 1 / exposureAttenuation(frequencyHz, frameIntervalS) - 1;
-  return {
-    factor: 1,
-    u: loss / Math.sqrt(3),
-    warning: loss > NEGLIGIBLE_LOSS ? unknown(loss) : null,
-  };
+  const longestS = Math.min(frameIntervalS, REFUSED_FRACTION / Math.max(frequencyHz, Number.MIN_VALUE));
+  const loss = 1 / exposureAttenuation(frequencyHz, longestS) - 1;
+  return { factor: 1, u: loss / Math.sqrt(3), warning: loss > NEGLIGIBLE_LOSS ? unknown(loss) : null };
 }
 
 function percent(fraction: number): string {
@@ -103,14 +101,5 @@ function unknown(loss: number): Warning {
     sentence:
       `The exposure is not stated, and the amplitude could be up to ${percent(loss)} larger than seen; state the clip's ` +
       'exposure, or film with a faster shutter.',
-  };
-}
-
-function needed(fraction: number): Warning {
-  return {
-    code: 'exposure-unknown',
-    sentence:
-      `The exposure is not stated, and a frame lasts ${fraction.toFixed(2)} drive periods, so the amplitude cannot be told; ` +
-      "state the clip's exposure.",
   };
 }
