@@ -87,7 +87,9 @@ export function solveLeastSquares(
         iterations++;
       }
       const flat = Math.max(Math.abs(reduction), step.predictedReduction) <= reductionTolerance * before;
-      if (flat && gain <= 2) {
+      // A promise below the rounding of the sum can be neither kept nor broken.
+      const unverifiable = !accepted && step.predictedReduction <= SUM_ROUNDING * before;
+      if ((flat && gain <= 2) || unverifiable) {
         polish();
         return finish('reduction', cosine);
       }

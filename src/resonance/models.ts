@@ -106,6 +106,22 @@ export function unitResponse(
   };
 }
 
+/** The value of `unitResponse` without its derivatives, for scans that need no more. */
+export function unitValue(
+  model: ResonanceModel,
+  driveHz: number,
+  naturalHz: number,
+  damping: number,
+): { readonly re: number; readonly im: number } {
+  const r = driveHz / naturalHz;
+  const g = model.damping === 'viscous' ? 2 * damping * r : damping;
+  const a = 1 - r * r;
+  const size = a * a + g * g;
+  if (model.excitation === 'base') return { re: (a + g * g) / size, im: (g * a - g) / size };
+  const n = model.excitation === 'base-relative' || model.excitation === 'unbalance' ? r * r : 1;
+  return { re: (n * a) / size, im: (-n * g) / size };
+}
+
 /** Amplitude of the response per unit input (magnification, transmissibility or their like), 0 or more. */
 export function unitAmplitude(response: { readonly re: number; readonly im: number }): number {
   return Math.hypot(response.re, response.im);

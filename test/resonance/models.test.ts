@@ -8,6 +8,7 @@ import {
   type ResonanceModel,
   unitAmplitude,
   unitResponse,
+  unitValue,
 } from '../../src/resonance/models.ts';
 
 const FORCE: ResonanceModel = { excitation: 'force', damping: 'viscous' };
@@ -100,6 +101,9 @@ describe('derivatives', () => {
         (r, naturalHz, damping) => {
           const at = (n: number, d: number) => unitResponse(model, r * naturalHz, n, d);
           const found = at(naturalHz, damping);
+          const value = unitValue(model, r * naturalHz, naturalHz, damping);
+          expect(value.re).toBeCloseTo(found.re, 11);
+          expect(value.im).toBeCloseTo(found.im, 11);
           const h = 1e-6;
           const size = unitAmplitude(found) * (1 + 1 / damping + 1 / (Math.abs(1 - r * r) + damping));
           const byN = [at(naturalHz * (1 + h), damping), at(naturalHz * (1 - h), damping)] as const;
