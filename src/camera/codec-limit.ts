@@ -63,8 +63,8 @@ const FLOOR_FACTOR = 3;
  * What the codec costs at a seen amplitude. Codecs between frames copy blocks and move them by quarter pixels,
  * so small motion is not noisy but wrong, and averaging does not help: on clips of known motion (H.264
  * and HEVC, 2 to 230 Mbit/s at 1080p60) amplitudes of 0.5 px and more came out within 0.005 px, 0.2 px within 12 %,
- * 0.1 px at 63 to 114 % and 0.05 px at 13 to 97 %. A still patch that shows motion at the same frequency sets
- * a floor of its own.
+ * 0.1 px at 63 to 114 % and 0.05 px at 13 to 97 %. A still patch that shows motion at the same frequency means that
+ * the picture itself moves; a dwell not three times larger is below that floor.
  *
  * @param amplitudePx amplitude as seen, px, 0 or more
  * @param still control fit at the same frequency, null where there is none

@@ -1,4 +1,4 @@
-import type { Correction, Warning } from './warning.ts';
+import type { Correction, KnownCorrection, Warning } from './warning.ts';
 
 /** Relative standard uncertainty of a stated exposure: nominal shutter times are rounded by up to 3 % (rectangular). */
 export const DEFAULT_EXPOSURE_REL_U = 0.017;
@@ -59,7 +59,7 @@ export function exposureCorrection(
  * amplitude is then little more than a lower bound, but the resonance can still be fitted, since every
  * dwell of the setup is smeared nearly alike.
  */
-export function unknownExposure(frequencyHz: number, frameIntervalS: number): Correction {
+export function unknownExposure(frequencyHz: number, frameIntervalS: number): KnownCorrection {
   if (!(frequencyHz >= 0 && frameIntervalS > 0))
     throw new Error('frequency and frame interval must be positive');
   const longestS = Math.min(frameIntervalS, REFUSED_FRACTION / Math.max(frequencyHz, Number.MIN_VALUE));

@@ -1,5 +1,5 @@
 import { rollingShutterEffect, rowPhaseDeg } from './rolling-shutter.ts';
-import type { Warning } from './warning.ts';
+import type { Correction, KnownCorrection, Warning } from './warning.ts';
 
 /** Relative standard uncertainty of a stated row readout: such figures are measured by users, to some per cent. */
 const READOUT_REL_U = 0.05;
@@ -23,20 +23,15 @@ export interface RowFacts {
   readonly fractionDifference: number | null;
 }
 
-/** What the rolling shutter means for a dwell. */
-export interface RowCorrection {
-  /** True over seen fundamental; null where the part outruns the readout and no sine is left to correct. */
-  readonly factor: number | null;
-  /** Standard uncertainty of the factor; null exactly when the factor is. */
-  readonly u: number | null;
+/** What the rolling shutter does to the lag of a dwell. */
+export interface LagShift {
   /** To add to the seen lag, degrees. */
   readonly lagShiftDeg: number;
   /** Standard uncertainty of the lag from the shutter, degrees. */
   readonly lagUDeg: number;
-  readonly warning: Warning | null;
 }
 
-const NOTHING: RowCorrection = { factor: 1, u: 0, lagShiftDeg: 0, lagUDeg: 0, warning: null };
+const NOTHING: KnownCorrection & LagShift = { factor: 1, u: 0, lagShiftDeg: 0, lagUDeg: 0, warning: null };
 
 /**
  * Rolling shutter of a dwell. With row times undone only the readout's own uncertainty is left. With a known
@@ -57,8 +52,8 @@ export function rowCorrection(
   if (fundamental === null) return { ...NOTHING, factor: null, u: null, warning: outrun() };
   const shift = rowPhaseDeg(frequencyHz, rows.rowReadoutS, rows.fractionDifference ?? 0);
   const factor = rows.undone ? 1 : 1 / fundamental;
-  // the loss grows with the square of the readout
-  const u = 2 * READOUT_REL_U * (1 / fundamental - 1);
+  // the loss grows with the square of the readout, and so does what is left after undoing a wrong one
+  const u = (rows.undone ? READOUT_REL_U ** 2 : 2 * READOUT_REL_U) * (1 / fundamental - 1);
   return {
     factor,
     u: factor * u,
@@ -68,7 +63,11 @@ export function rowCorrection(
   };
 }
 
-function unknownReadout(frequencyHz: number, frameRateHz: number, rows: RowFacts): RowCorrection {
+function unknownReadout(
+  frequencyHz: number,
+  frameRateHz: number,
+  rows: RowFacts,
+): KnownCorrection & LagShift {
   const longestS = Math.min(1 / frameRateHz, LONGEST_READOUT_S);
   const lagDeg = Math.abs(rowPhaseDeg(frequencyHz, longestS, rows.fractionDifference ?? 0));
   const fundamental = seenFundamental(frequencyHz, longestS, rows.amplitudeFraction);
@@ -100,8 +99,8 @@ function unknown(lagDeg: number, loss: number): Warning {
   return {
     code: 'rolling-shutter-unknown',
     sentence:
-      `The camera reads its rows one after the other, which could falsify ${parts.join(' and ')}; state rowReadout, or film with both ` +
-      'markers at the same height and the motion across the rows.',
+      `The camera reads its rows one after the other, which could falsify ${parts.join(' and ')}; state rowReadout, or film ` +
+      "with the motion and both markers along the picture's long side.",
   };
 }
 
@@ -110,6 +109,6 @@ function outrun(): Warning {
     code: 'rolling-shutter-strong',
     sentence:
       'The part moves faster than the camera reads its rows, so its motion cannot be recovered; turn the camera so that the ' +
-      'motion runs across the rows, or film from further away.',
+      "motion runs along the picture's long side, or film from further away.",
   };
 }

@@ -1,4 +1,4 @@
-import type { Correction, Warning } from './warning.ts';
+import type { KnownCorrection, Warning } from './warning.ts';
 
 /** Relative standard uncertainty of a jitter figure. */
 const JITTER_REL_U = 0.2;
@@ -36,7 +36,7 @@ export function quantisationEffect(frequencyHz: number, quantumS: number): numbe
  * either may be 0. u is a fifth of the jitter's loss doubled (its figure enters squared) and, for the rounding, its whole
  * loss over sqrt(3), because ticks that divide the frame interval lose nothing.
  */
-export function stampCorrection(frequencyHz: number, jitterS: number, quantumS: number): Correction {
+export function stampCorrection(frequencyHz: number, jitterS: number, quantumS: number): KnownCorrection {
   if (!(jitterS >= 0 && quantumS >= 0)) throw new Error('jitter and tick must be 0 or more');
   const jitter = jitterEffect(frequencyHz, jitterS).amplitude;
   const loss = 1 - quantisationEffect(frequencyHz, Math.min(quantumS, 0.5 / frequencyHz));

@@ -34,13 +34,19 @@ export interface Warning {
   readonly sentence: string;
 }
 
-/**
- * A factor to multiply a seen amplitude by, to get nearer the true one.
- * `factor` is null where no honest factor exists (the warning then says why); `u` is the standard
- * uncertainty of the factor (k = 1, dimensionless), null exactly when `factor` is.
- */
-export interface Correction {
-  readonly factor: number | null;
-  readonly u: number | null;
+/** A factor to multiply a seen amplitude by, to get nearer the true one, with its standard uncertainty (k = 1). */
+export interface KnownCorrection {
+  readonly factor: number;
+  readonly u: number;
   readonly warning: Warning | null;
 }
+
+/** No honest factor exists; the warning says why. */
+export interface RefusedCorrection {
+  readonly factor: null;
+  readonly u: null;
+  readonly warning: Warning;
+}
+
+/** What one effect of filming asks for. */
+export type Correction = KnownCorrection | RefusedCorrection;

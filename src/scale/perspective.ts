@@ -11,11 +11,9 @@ import {
   normalisation,
   refineHomography,
 } from './homography.ts';
+import { spansPlane } from './plane-span.ts';
 import { isSeen, type PointPx, type PointTrack } from './point-track.ts';
 import { DEFAULT_CLICK_U_PX } from './scale.ts';
-
-/** A triangle of plane points flatter than this (area over longest side squared) counts as a line. */
-const FLAT_TRIANGLE = 0.01;
 
 /** A point of the plane of motion: where it is in the frame, px, and where it truly is in the plane, mm. */
 export interface PlanePoint {
@@ -193,37 +191,4 @@ function residualWarning(residual: PlaneResidual, seenUPx: number, clickUPx: num
       `The plane points miss one plane by ${(residual.rmsPx ?? 0).toFixed(1)} px; point ${residual.worstPoint + 1} is furthest off: ` +
       'check its millimetres and mark it again.',
   };
-}
-
-/** Whether some four points have no three in line: then, and only then, they determine a plane's view. */
-function spansPlane(points: readonly PointPx[]): boolean {
-  const n = points.length;
-  for (let a = 0; a < n - 3; a++) {
-    for (let b = a + 1; b < n - 2; b++) {
-      for (let c = b + 1; c < n - 1; c++) {
-        if (isFlat(points[a]!, points[b]!, points[c]!)) continue;
-        for (let d = c + 1; d < n; d++) {
-          const last = points[d]!;
-          if (
-            !isFlat(points[a]!, points[b]!, last) &&
-            !isFlat(points[a]!, points[c]!, last) &&
-            !isFlat(points[b]!, points[c]!, last)
-          ) {
-            return true;
-          }
-        }
-      }
-    }
-  }
-  return false;
-}
-
-function isFlat(a: PointPx, b: PointPx, c: PointPx): boolean {
-  const area = Math.abs((b[0] - a[0]) * (c[1] - a[1]) - (b[1] - a[1]) * (c[0] - a[0]));
-  const longest = Math.max(
-    Math.hypot(b[0] - a[0], b[1] - a[1]),
-    Math.hypot(c[0] - a[0], c[1] - a[1]),
-    Math.hypot(c[0] - b[0], c[1] - b[1]),
-  );
-  return !(area > FLAT_TRIANGLE * longest * longest);
 }

@@ -1,4 +1,4 @@
-import type { Correction } from '../camera/warning.ts';
+import type { KnownCorrection } from '../camera/warning.ts';
 import { InputError } from '../errors.ts';
 
 /** Standard uncertainty, degrees, of the camera's squareness to the motion where none is stated. */
@@ -24,11 +24,11 @@ export function unknownTiltRelU(tiltUDeg: number): number {
 }
 
 /**
- * Correction for a known tilt between motion and picture plane: factor 1 / cos(tilt), with
+ * KnownCorrection for a known tilt between motion and picture plane: factor 1 / cos(tilt), with
  * u = factor * (tan(tilt) u_tilt and the one-sided rest, in quadrature). A tilt of 0 gives factor 1.
  * @throws InputError for a tilt outside -80 to 80 degrees or a negative uncertainty.
  */
-export function tiltCorrection(tiltDeg: number, tiltUDeg: number = DEFAULT_TILT_U_DEG): Correction {
+export function tiltCorrection(tiltDeg: number, tiltUDeg: number = DEFAULT_TILT_U_DEG): KnownCorrection {
   if (!(Math.abs(tiltDeg) <= 80))
     throw new InputError(
       `A tilt of ${tiltDeg} degrees cannot be measured; turn the camera square to the motion.`,
