@@ -10,6 +10,8 @@ import { rowCorrection } from './row-correction.ts';
 import { stampCorrection } from './timestamp-jitter.ts';
 import type { Warning } from './warning.ts';
 
+export type { DwellFacts, FilmingFacts, RawAmplitude, RawLag, RelativeLine } from './dwell-facts.ts';
+
 /** A dwell's true amplitude and lag with their budgets. */
 export interface CorrectedDwell {
   /** mm zero to peak. */

@@ -45,7 +45,7 @@ export function rowCorrection(
   frequencyHz: number,
   frameRateHz: number,
   rows: RowFacts | null,
-): RowCorrection {
+): Correction & LagShift {
   if (rows === null || rows.rowReadoutS === 0) return NOTHING;
   if (rows.rowReadoutS === null) return unknownReadout(frequencyHz, frameRateHz, rows);
   const fundamental = seenFundamental(frequencyHz, rows.rowReadoutS, rows.amplitudeFraction);
