@@ -19,6 +19,8 @@ export interface FrameRegularity {
    * A clip at a constant rate shows no more than the rounding of its clock.
    */
   readonly jitterRmsS: number | null;
+  /** Rate of that lattice, frames per second of file time: finer than one interval can tell; null below 2 frames. */
+  readonly latticeFps: number | null;
   /** True when intervals differ by more than the clock's rounding explains, holes left aside. */
   readonly variable: boolean;
 }
@@ -57,9 +59,11 @@ export interface ClipInfo {
   readonly displayedHeight: number;
   /** Clockwise turn that brings the stored picture upright, degrees. */
   readonly rotationDeg: RotationDeg;
+  /** True where the picture, once upright, is to be shown mirrored left to right (some front cameras). */
+  readonly mirrored: boolean;
   /** Width of a stored pixel over its height, exact as stored (4/3 for 4:3); 1 for square pixels. */
   readonly pixelAspect: number;
-  /** Frame rate the container declares, frames per second of file time; null where it declares none. */
+  /** Mean frame rate the demuxer states, frames per second of file time; null where it states none. */
   readonly nominalFps: number | null;
   /** One over the median interval between frames, frames per second of file time; null for a single frame. */
   readonly measuredFps: number | null;

@@ -17,8 +17,8 @@ export interface DecodedFrame {
   readonly regions: readonly LumaImage[];
 }
 
-/** Receives the frames one by one; returning `false` ends the decoding early. */
-export type OnFrame = (frame: DecodedFrame) => boolean | undefined | void;
+/** Receives the frames one by one, synchronously; returning `false` ends the decoding early. */
+export type OnFrame = (frame: DecodedFrame) => unknown;
 
 /** How to decode; everything is optional. */
 export interface DecodeOptions {

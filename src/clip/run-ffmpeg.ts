@@ -41,7 +41,7 @@ export interface RunOptions {
    * Receives standard output piece by piece, synchronously; the piece may be reused afterwards. Returning false
    * stops the run; throwing stops it too, and the error is passed on once the process has ended.
    */
-  readonly onOutput?: (chunk: Buffer) => boolean | undefined | void;
+  readonly onOutput?: (chunk: Buffer) => unknown;
   /** Receives each line of standard error. */
   readonly onLine?: (line: string) => void;
   /** Time without any output after which the run is given up, s; 30 where absent. */

@@ -1,0 +1,32 @@
+import { basename } from 'node:path';
+import type { FfmpegResult } from './run-ffmpeg.ts';
+
+/** How a clip is called in a message: its file name. */
+export function clipName(path: string): string {
+  return basename(path);
+}
+
+/** The last thing ffmpeg said, without its own marks; empty where it said nothing. */
+export function lastWords(result: FfmpegResult): string {
+  const line = result.lastLines.at(-1) ?? '';
+  return line.replace(/\[[^\]]*\]\s*/g, '').replace(/\s*[.:]*\s*$/, '');
+}
+
+/** One sentence on a pass over a clip that did not give what it should. */
+export function endedBadly(path: string, result: FfmpegResult, framesSoFar: number): string {
+  const name = clipName(path);
+  const after = framesSoFar > 0 ? ` after ${framesSoFar} frames` : '';
+  const said = lastWords(result) === '' ? '' : ` ("${lastWords(result)}")`;
+  switch (result.reason) {
+    case 'stalled':
+      return `${name}: ffmpeg fell silent${after} and was stopped; try the clip again, or another ffmpeg.`;
+    case 'killed':
+      return `${name}: ffmpeg was killed by ${result.signal ?? 'the system'}${after}; measure the clip again.`;
+    case 'not-started':
+      return `${name}: ffmpeg could not be started${said}; check its installation.`;
+    case 'failed':
+      return `${name}: ffmpeg ended with status ${result.exitCode}${after}${said}; the clip cannot be decoded.`;
+    default:
+      return `${name}: no frame of the clip could be decoded${said}; copy it anew from the camera.`;
+  }
+}
