@@ -1,5 +1,5 @@
+import type { Warning } from '../numeric/warning.ts';
 import { fasterRateHz } from './frame-rates.ts';
-import type { Warning } from './warning.ts';
 
 /** Where a frequency appears when sampled at a frame rate. */
 export interface FoldedFrequency {

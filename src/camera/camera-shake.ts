@@ -1,4 +1,4 @@
-import type { Warning } from './warning.ts';
+import type { Warning } from '../numeric/warning.ts';
 
 /** Common motion above this, px root mean square, is camera shake; tracking errors are not common. */
 const SHAKE_PX = 0.2;

@@ -1,4 +1,4 @@
-import type { Warning } from './warning.ts';
+import type { Warning } from '../numeric/warning.ts';
 
 /**
  * How a clip's pixels were stored: `none` exactly; `intra` each frame by itself (MJPEG, ProRes, DNxHD);

@@ -1,4 +1,5 @@
 import { type Measured, measured, NOT_MEASURED } from '../numeric/measured.ts';
+import type { Warning } from '../numeric/warning.ts';
 import { foldFrequency, unfoldPhase } from './aliasing.ts';
 import type { Budget } from './amplitude-budget.ts';
 import { type CodecLimit, codecLimit } from './codec-limit.ts';
@@ -8,7 +9,6 @@ import { exposureCorrection, unknownExposure } from './exposure-blur.ts';
 import { filmingWarnings, isRefused } from './filming-warnings.ts';
 import { rowCorrection } from './row-correction.ts';
 import { stampCorrection } from './timestamp-jitter.ts';
-import type { Warning } from './warning.ts';
 
 export type { DwellFacts, FilmingFacts, RawAmplitude, RawLag, RelativeLine } from './dwell-facts.ts';
 

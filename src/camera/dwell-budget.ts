@@ -1,7 +1,7 @@
+import type { KnownCorrection } from '../numeric/warning.ts';
 import { type Budget, type BudgetEntry, type BudgetSource, combineBudget } from './amplitude-budget.ts';
 import { type CodecLimit, codecLimit } from './codec-limit.ts';
 import type { DwellFacts, RawLag } from './dwell-facts.ts';
-import type { KnownCorrection } from './warning.ts';
 
 const DEG_PER_RAD = 180 / Math.PI;
 

@@ -64,7 +64,7 @@ export interface DwellFacts {
   readonly rows: RowFacts | null;
   /** Amplitude of a still patch at the same frequency, px, treated as the marker was (ground subtracted or not); null where there is no control. */
   readonly stillPatchAmplitudePx: number | null;
-  /** Lines proportional to the amplitude: scale, parallax, axis, tilt, perspective (see `scaleLines`). */
+  /** Lines proportional to the amplitude: scale, parallax, axis, tilt, perspective (see `geometryLines`). */
   readonly relativeLines: readonly RelativeLine[];
   /** Further lines of the amplitude, mm: leftover, drift. */
   readonly amplitudeLines: readonly BudgetEntry[];

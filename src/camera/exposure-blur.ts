@@ -1,4 +1,4 @@
-import type { Correction, KnownCorrection, Warning } from './warning.ts';
+import type { Correction, KnownCorrection, Warning } from '../numeric/warning.ts';
 
 /** Relative standard uncertainty of a stated exposure: nominal shutter times are rounded by up to 3 % (rectangular). */
 export const DEFAULT_EXPOSURE_REL_U = 0.017;

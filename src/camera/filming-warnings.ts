@@ -1,7 +1,7 @@
+import type { Warning } from '../numeric/warning.ts';
 import { harmonicOnFundamental, harmonicWarning, judgeAlias } from './aliasing.ts';
 import type { FilmingFacts } from './dwell-facts.ts';
 import { frameDensity } from './frames-per-period.ts';
-import type { Warning } from './warning.ts';
 
 /** Whether the frame rate makes this drive frequency unmeasurable (see `judgeAlias`). */
 export function isRefused(frequencyHz: number, filming: FilmingFacts): boolean {

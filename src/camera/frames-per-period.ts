@@ -1,5 +1,5 @@
+import type { Warning } from '../numeric/warning.ts';
 import { fasterRateHz } from './frame-rates.ts';
-import type { Warning } from './warning.ts';
 
 /** Below this many frames a period the second harmonic is above half the frame rate. */
 const MIN_FRAMES_PER_PERIOD = 4;

@@ -1,4 +1,4 @@
-import type { Warning } from './warning.ts';
+import type { Warning } from '../numeric/warning.ts';
 
 /** Fraction of a patch at the ends of the luma range from which it counts as saturated. */
 const SATURATED_FRACTION = 0.1;

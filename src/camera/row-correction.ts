@@ -1,5 +1,5 @@
+import type { Correction, KnownCorrection, Warning } from '../numeric/warning.ts';
 import { rollingShutterEffect, rowPhaseDeg } from './rolling-shutter.ts';
-import type { Correction, KnownCorrection, Warning } from './warning.ts';
 
 /** Relative standard uncertainty of a stated row readout: such figures are measured by users, to some per cent. */
 const READOUT_REL_U = 0.05;

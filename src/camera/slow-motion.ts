@@ -1,7 +1,7 @@
 import { InputError } from '../errors.ts';
+import type { Warning } from '../numeric/warning.ts';
 import { foldFrequency } from './aliasing.ts';
 import { PHONE_FRAME_RATES_HZ } from './frame-rates.ts';
-import type { Warning } from './warning.ts';
 
 /** Rates nearer than this fraction are the same rate: 29.97 and 30, a clock a little off. */
 const SAME_RATE = 0.01;

@@ -1,4 +1,4 @@
-import type { KnownCorrection, Warning } from './warning.ts';
+import type { KnownCorrection, Warning } from '../numeric/warning.ts';
 
 /** Relative standard uncertainty of a jitter figure. */
 const JITTER_REL_U = 0.2;

@@ -1,5 +1,5 @@
-import type { Warning } from '../camera/warning.ts';
 import { InputError } from '../errors.ts';
+import type { Warning } from '../numeric/warning.ts';
 
 /** Standard uncertainty of each distance read on a tape, mm, where none is stated. */
 export const DEFAULT_DISTANCE_U_MM = 1;

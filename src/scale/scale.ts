@@ -1,5 +1,5 @@
-import type { Warning } from '../camera/warning.ts';
 import { InputError } from '../errors.ts';
+import type { Warning } from '../numeric/warning.ts';
 import type { PointPx } from './point-track.ts';
 
 /** Standard uncertainty of one clicked coordinate, px, where the user states none: half a pixel. */

@@ -1,5 +1,5 @@
-import type { KnownCorrection } from '../camera/warning.ts';
 import { InputError } from '../errors.ts';
+import type { KnownCorrection } from '../numeric/warning.ts';
 
 /** Standard uncertainty, degrees, of the camera's squareness to the motion where none is stated. */
 export const DEFAULT_TILT_U_DEG = 1;

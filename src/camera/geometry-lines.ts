@@ -1,13 +1,13 @@
-import type { RelativeLine } from '../camera/dwell-facts.ts';
-import type { PixelsToMm } from './displacement.ts';
-import { axisAngleRelU, type MotionAxis } from './motion-axis.ts';
-import type { Parallax } from './parallax.ts';
-import { localScaleRelU } from './perspective.ts';
-import type { PointPx } from './point-track.ts';
-import { DEFAULT_TILT_U_DEG, unknownTiltRelU } from './tilt.ts';
+import type { PixelsToMm } from '../scale/displacement.ts';
+import { axisAngleRelU, type MotionAxis } from '../scale/motion-axis.ts';
+import type { Parallax } from '../scale/parallax.ts';
+import { localScaleRelU } from '../scale/perspective.ts';
+import type { PointPx } from '../scale/point-track.ts';
+import { DEFAULT_TILT_U_DEG, unknownTiltRelU } from '../scale/tilt.ts';
+import type { RelativeLine } from './dwell-facts.ts';
 
 /** What a camera setup's geometry leaves uncertain. */
-export interface ScaleLinesInput {
+export interface GeometryLinesInput {
   readonly toMm: PixelsToMm;
   readonly axis: MotionAxis;
   /** null where the distances were not given: rule and motion are then taken to share a plane. */
@@ -22,7 +22,7 @@ export interface ScaleLinesInput {
  * Budget lines of scale and geometry, relative to the amplitude and common to every dwell of the setup. With a
  * marked plane the view's obliqueness is in the mapping, so tilt and parallax have no lines of their own.
  */
-export function scaleLines(input: ScaleLinesInput): RelativeLine[] {
+export function geometryLines(input: GeometryLinesInput): RelativeLine[] {
   const { toMm, axis, parallax } = input;
   const line = (source: RelativeLine['source'], relU: number): RelativeLine => ({
     source,
