@@ -1,6 +1,7 @@
 import type { ClipInfo } from './clip-info.ts';
+import { everyFrameOptions } from './every-frame-options.ts';
 import type { FfmpegPass } from './ffmpeg-arguments.ts';
-import { everyFrameOptions, type Ffmpeg } from './find-ffmpeg.ts';
+import type { Ffmpeg } from './find-ffmpeg.ts';
 
 /** A run of frames in order of presentation: from index `first` up to, not including, `end`. */
 export interface FrameRange {
@@ -74,7 +75,7 @@ export function decodingPass(
       ...(parts.seek ? seekOptions(clip, range.first) : []),
     ],
     filters: [...timeFilters(clip, range), ...parts.filters],
-    outputOptions: [...everyFrameOptions(ffmpeg), ...parts.encoder, ...['-f', 'nut']],
+    outputOptions: [...everyFrameOptions(ffmpeg, clip.timeBase), ...parts.encoder, ...['-f', 'nut']],
   };
 }
 

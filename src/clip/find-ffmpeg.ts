@@ -90,14 +90,3 @@ async function askVersion(path: string, origin: FfmpegOrigin): Promise<Ffmpeg | 
   if (version === undefined || library === null) return 'it does not tell a version as ffmpeg does';
   return { path, version, formatLibrary: [Number(library[1]), Number(library[2])], origin };
 }
-
-/** Options that make an output carry every frame at its own time, none doubled or dropped, none rounded. */
-export function everyFrameOptions(ffmpeg: Ffmpeg): string[] {
-  const [major, minor] = ffmpeg.formatLibrary;
-  const atLeast = (wantedMajor: number, wantedMinor: number): boolean =>
-    major > wantedMajor || (major === wantedMajor && minor >= wantedMinor);
-  return [
-    ...(atLeast(59, 27) ? ['-fps_mode', 'passthrough'] : ['-vsync', '0']), // renamed in ffmpeg 5.1
-    ...['-enc_time_base', atLeast(60, 16) ? 'demux' : '-1'], // renamed in ffmpeg 6.1
-  ];
-}

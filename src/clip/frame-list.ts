@@ -1,6 +1,7 @@
 import type { ClipContainer } from './clip-info.ts';
+import { everyFrameOptions } from './every-frame-options.ts';
 import { ffmpegArguments } from './ffmpeg-arguments.ts';
-import { everyFrameOptions, type Ffmpeg } from './find-ffmpeg.ts';
+import type { Ffmpeg } from './find-ffmpeg.ts';
 import { LineTail } from './line-tail.ts';
 import { type FfmpegResult, type RunOptions, runFfmpeg } from './run-ffmpeg.ts';
 
@@ -39,6 +40,8 @@ export interface ListingPass {
   readonly list: FrameList | null;
   /** Whether each packet is certain to give one picture; otherwise only decoding tells the frames. */
   readonly certain: boolean;
+  /** One tick of the stream's clock, s, as [numerator, denominator]; null where the pass did not get so far. */
+  readonly timeBase: readonly [number, number] | null;
   readonly result: FfmpegResult;
   /** All lines ffmpeg printed, level marks removed. */
   readonly lines: readonly string[];
@@ -66,12 +69,13 @@ export function listPackets(clip: ListedClip, ffmpeg: Ffmpeg, options: RunOption
 export function listDecodedFrames(
   clip: ListedClip,
   ffmpeg: Ffmpeg,
+  timeBase: readonly [number, number],
   options: RunOptions,
 ): Promise<ListingPass> {
   const parts = {
     inputOptions: ['-noautorotate', '-copyts', '-threads', '2'],
     filters: ['crop=2:2:0:0'],
-    outputOptions: [...everyFrameOptions(ffmpeg), '-c:v', 'rawvideo', '-f', 'framecrc'],
+    outputOptions: [...everyFrameOptions(ffmpeg, timeBase), '-c:v', 'rawvideo', '-f', 'framecrc'],
   };
   return listingPass(clip, ffmpeg, parts, options);
 }
@@ -98,7 +102,7 @@ async function listingPass(
     },
   });
   rows.end();
-  return { ...displayedFrames(raw), result, lines, complaints };
+  return { ...displayedFrames(raw), timeBase: raw.timeBase, result, lines, complaints };
 }
 
 /** Reads one row: "#tb 0: 1/15360" or "stream, dts, pts, duration, size, checksum[, F=0xflags]...". */

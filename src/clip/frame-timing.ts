@@ -18,65 +18,74 @@ export interface FrameTiming {
 }
 
 /**
- * Judges a sequence of timestamps: `timesS` ascending, s; `tickS` one tick of their clock, s. Holes are told from
- * the median interval; evenness by a least-squares line through time against frame count, holes counted.
+ * Judges a sequence of timestamps: `ticks` ascending whole ticks, `timeBase` one tick in s as [numerator,
+ * denominator]. Holes are told from the median interval; evenness by a least-squares line through time against
+ * frame count, holes counted.
  */
-export function frameTiming(timesS: Float64Array, tickS: number): FrameTiming {
+export function frameTiming(ticks: Float64Array, timeBase: readonly [number, number]): FrameTiming {
+  const seconds = (count: number): number => (count * timeBase[0]) / timeBase[1];
   const intervals = Float64Array.from(
-    { length: Math.max(0, timesS.length - 1) },
-    (_, i) => timesS[i + 1]! - timesS[i]!,
+    { length: Math.max(0, ticks.length - 1) },
+    (_, i) => ticks[i + 1]! - ticks[i]!,
   );
   const duplicates: number[] = [];
   intervals.forEach((interval, i) => {
-    if (interval < tickS / 2) duplicates.push(i + 1);
+    if (interval === 0) duplicates.push(i + 1);
   });
-  const distinct = intervals.filter((interval) => interval >= tickS / 2).sort();
-  const medianS = distinct.length > 0 ? median(distinct) : null;
+  const distinct = intervals.filter((interval) => interval > 0).sort();
+  const shortest = intervals.length > 0 ? seconds(duplicates.length > 0 ? 0 : distinct[0]!) : null;
+  const longest = intervals.length > 0 ? seconds(distinct.at(-1) ?? 0) : null;
+  if (distinct.length === 0) {
+    const regularity = { jitterRmsS: null, latticeFps: null, variable: false };
+    return {
+      ...{ medianIntervalS: null, gaps: [], duplicates },
+      regularity: { shortestIntervalS: shortest, longestIntervalS: longest, ...regularity },
+    };
+  }
+
+  const middle = median(distinct);
+  const isHole = (interval: number): boolean => interval > HOLE_RATIO * middle;
   const gaps: FrameGap[] = [];
-  intervals.forEach((intervalS, afterFrame) => {
-    if (medianS === null || intervalS <= HOLE_RATIO * medianS) return;
-    gaps.push({ afterFrame, intervalS, missingFrames: Math.round(intervalS / medianS) - 1 });
+  intervals.forEach((interval, afterFrame) => {
+    if (!isHole(interval)) return;
+    gaps.push({ afterFrame, intervalS: seconds(interval), missingFrames: Math.round(interval / middle) - 1 });
   });
-  const lattice = medianS === null ? null : fitLattice(timesS, medianS);
-  const uneven = (interval: number): boolean =>
-    medianS !== null &&
-    interval <= HOLE_RATIO * medianS &&
-    Math.abs(interval - medianS) > EVEN_WITHIN * medianS + tickS;
+  const isUneven = (interval: number): boolean =>
+    !isHole(interval) && Math.abs(interval - middle) > EVEN_WITHIN * middle + 1;
+  const lattice = fitLattice(ticks, middle);
   return {
-    medianIntervalS: medianS,
+    medianIntervalS: seconds(middle),
     gaps,
     duplicates,
     regularity: {
-      shortestIntervalS: intervals.length > 0 ? intervals.reduce((a, b) => Math.min(a, b)) : null,
-      longestIntervalS: intervals.length > 0 ? intervals.reduce((a, b) => Math.max(a, b)) : null,
-      jitterRmsS: timesS.length < 3 ? null : (lattice?.rmsS ?? null),
-      latticeFps: lattice === null ? null : 1 / lattice.intervalS,
-      variable: distinct.filter(uneven).length > UNEVEN_FRACTION * distinct.length,
+      shortestIntervalS: shortest,
+      longestIntervalS: longest,
+      jitterRmsS: ticks.length < 3 ? null : seconds(lattice.rms),
+      latticeFps: timeBase[1] / (lattice.interval * timeBase[0]),
+      variable: distinct.filter(isUneven).length > UNEVEN_FRACTION * distinct.length,
     },
   };
 }
 
 /** Least-squares line of time against frame count, in which a hole counts as the frames that fit into it. */
-function fitLattice(timesS: Float64Array, medianS: number): { intervalS: number; rmsS: number } {
-  const counts = new Float64Array(timesS.length);
-  for (let i = 1; i < timesS.length; i++) {
-    counts[i] = counts[i - 1]! + Math.round((timesS[i]! - timesS[i - 1]!) / medianS);
-  }
-  const n = timesS.length;
+function fitLattice(ticks: Float64Array, middle: number): { interval: number; rms: number } {
+  const n = ticks.length;
+  const counts = new Float64Array(n);
+  for (let i = 1; i < n; i++) counts[i] = counts[i - 1]! + Math.round((ticks[i]! - ticks[i - 1]!) / middle);
   const meanCount = counts.reduce((a, b) => a + b, 0) / n;
-  const meanS = timesS.reduce((a, b) => a + b, 0) / n;
+  const meanTicks = ticks.reduce((a, b) => a + b, 0) / n;
   let xx = 0;
   let xy = 0;
-  let yy = 0;
   for (let i = 0; i < n; i++) {
-    const x = counts[i]! - meanCount;
-    const y = timesS[i]! - meanS;
-    xx += x * x;
-    xy += x * y;
-    yy += y * y;
+    xx += (counts[i]! - meanCount) ** 2;
+    xy += (counts[i]! - meanCount) * (ticks[i]! - meanTicks);
   }
-  const intervalS = xx > 0 ? xy / xx : medianS;
-  return { intervalS, rmsS: Math.sqrt(Math.max(0, yy - intervalS * xy) / n) };
+  const interval = xy / xx;
+  let squares = 0;
+  for (let i = 0; i < n; i++) {
+    squares += (ticks[i]! - meanTicks - interval * (counts[i]! - meanCount)) ** 2;
+  }
+  return { interval, rms: Math.sqrt(squares / n) };
 }
 
 function median(sorted: Float64Array): number {

@@ -66,7 +66,7 @@ export async function probeClip(path: string, options: ProbeOptions = {}): Promi
   const ticks = list.pts.map((pts) => pts - originTicks);
   const [numerator, denominator] = list.timeBase;
   const timesS = ticks.map((tick) => (tick * numerator) / denominator);
-  const timing = frameTiming(timesS, numerator / denominator);
+  const timing = frameTiming(ticks, list.timeBase);
   const { codec, pixelFormat, codedWidth, codedHeight, pixelAspect, nominalFps, colour } = video;
   const shown = orientation ?? { rotationDeg: 0, mirrored: false };
   const facts = {
@@ -141,7 +141,8 @@ async function framesOf(
   ) {
     return packets.list;
   }
-  const decoded = await listDecodedFrames(clip, ffmpeg, run);
+  if (packets.timeBase === null) throw new InputError(endedBadly(clip.path, packets.result, 0));
+  const decoded = await listDecodedFrames(clip, ffmpeg, packets.timeBase, run);
   if (decoded.result.reason === 'cancelled') throw new CancelledError();
   if (decoded.list === null) throw new InputError(endedBadly(clip.path, decoded.result, 0));
   return { ...decoded.list, keyFrames: keysByTime(decoded.list, packets.list) };
