@@ -57,7 +57,7 @@ export function propagate(model: MeasurementModel, x: Float64Array, covariance: 
   const m = y.length;
   const out = new Float64Array(m * m);
   for (let a = 0; a < m; a++) {
-    for (let b = 0; b < m; b++) {
+    for (let b = a; b < m; b++) {
       let sum = 0;
       for (let i = 0; i < n; i++) {
         for (let j = 0; j < n; j++) {
@@ -65,6 +65,7 @@ export function propagate(model: MeasurementModel, x: Float64Array, covariance: 
         }
       }
       out[a * m + b] = sum;
+      out[b * m + a] = sum;
     }
   }
   const u = Float64Array.from({ length: m }, (_, a) => Math.sqrt(Math.max(0, out[a * m + a]!)));
