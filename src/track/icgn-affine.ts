@@ -12,7 +12,7 @@ import {
   type RegistrarOptions,
   type Registration,
 } from './registration.ts';
-import { steepestDescent } from './steepest-descent.ts';
+import { requireInverse, steepestDescent } from './steepest-descent.ts';
 import type { Template } from './template.ts';
 
 // A part in a dwell turns by a few degrees; beyond this the iteration has run away.
@@ -55,7 +55,7 @@ export class AffineRegistrar {
     this.centred = descent.centred;
     this.energy = descent.energy;
     this.images = descent.images;
-    this.inverseHessian = descent.inverseHessian;
+    this.inverseHessian = requireInverse(descent);
   }
 
   /** The deformation of the last registration that converged. */

@@ -12,7 +12,7 @@ import {
   type RegistrarOptions,
   type Registration,
 } from './registration.ts';
-import { steepestDescent } from './steepest-descent.ts';
+import { requireInverse, steepestDescent } from './steepest-descent.ts';
 import type { Template } from './template.ts';
 
 /**
@@ -56,7 +56,7 @@ export class TranslationRegistrar {
     this.centred = descent.centred;
     this.energy = descent.energy;
     this.images = descent.images;
-    this.inverseHessian = descent.inverseHessian;
+    this.inverseHessian = requireInverse(descent);
   }
 
   /**

@@ -74,34 +74,53 @@ export class RegistrationUncertainty {
   }
 }
 
-function covariancePerUnitNoise(template: Template, parameters: 2 | 6): PositionCovariance | null {
+/** What a template's texture can tell, and what noise does to it; both `parameters` * `parameters`. */
+export interface TextureInformation {
+  /** Gauss-Newton matrix of the texture alone: less what the template's own noise adds to it. */
+  readonly quietHessian: Float64Array;
+  /** What noise adds to each of the first two diagonal elements of the Gauss-Newton matrix. */
+  readonly noiseInHessian: number;
+  /** Covariance of the steepest-descent sums for frame noise of 1 DN per pixel. */
+  readonly sumsCovariance: Float64Array;
+}
+
+/** Takes a template's texture and its noise apart. */
+export function textureInformation(template: Template, parameters: 2 | 6): TextureInformation {
   const { widthPx, heightPx, smoothed, noiseDn, framesAveraged } = template;
   const { images, hessian } = steepestDescent(template, parameters);
   const count = widthPx * heightPx;
 
-  // Gauss-Newton matrix without the template's noise.
-  const noise =
+  const noiseInHessian =
     ((count * noiseDn * noiseDn) / framesAveraged) *
     derivativeNoiseGain(smoothed) *
     interpolatedNoiseGain(0, smoothed);
   const meanSquareX = (widthPx * widthPx - 1) / 12;
   const meanSquareY = (heightPx * heightPx - 1) / 12;
   const lever = [1, 1, meanSquareX, meanSquareY, meanSquareX, meanSquareY];
-  const quiet = Float64Array.from(hessian);
-  for (let k = 0; k < parameters; k++) quiet[k * parameters + k]! -= noise * lever[k]!;
-  const inverse = invertSymmetric(quiet, parameters);
-  if (!inverse) return null;
+  const quietHessian = Float64Array.from(hessian);
+  for (let k = 0; k < parameters; k++) quietHessian[k * parameters + k]! -= noiseInHessian * lever[k]!;
 
-  // Noise of 1 DN, smoothed, as seen by the steepest-descent images.
   const seen = Array.from({ length: parameters }, (_, k) => {
     const image = images.subarray(k * count, (k + 1) * count);
     return smoothed ? spreadByBinomial(image, widthPx, heightPx) : image;
   });
+  const sumsCovariance = new Float64Array(parameters * parameters);
+  for (let a = 0; a < parameters; a++) {
+    for (let b = 0; b < parameters; b++) sumsCovariance[a * parameters + b] = dot(seen[a]!, seen[b]!);
+  }
+  return { quietHessian, noiseInHessian, sumsCovariance };
+}
+
+function covariancePerUnitNoise(template: Template, parameters: 2 | 6): PositionCovariance | null {
+  const { quietHessian, sumsCovariance } = textureInformation(template, parameters);
+  const inverse = invertSymmetric(quietHessian, parameters);
+  if (!inverse) return null;
   const covariance = (a: number, b: number): number => {
     let sum = 0;
     for (let i = 0; i < parameters; i++) {
       for (let j = 0; j < parameters; j++) {
-        sum += inverse[a * parameters + i]! * dot(seen[i]!, seen[j]!) * inverse[j * parameters + b]!;
+        sum +=
+          inverse[a * parameters + i]! * sumsCovariance[i * parameters + j]! * inverse[j * parameters + b]!;
       }
     }
     return sum;

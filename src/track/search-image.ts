@@ -11,7 +11,12 @@ import type { FoundTemplate, SearchOptions, TemplateFit, TemplateSearch } from '
 const DEFAULT_LEAST_SCORE = 0.6;
 // Binning by 2 quarters the places and the pixels; patches smaller than this lose too much by it.
 const LEAST_FOR_BINNING_PX = 25;
+const LEAST_FOR_COARSE_BINNING_PX = 37;
+const LARGE_AREA_PX = 400_000;
+// A coarse binning's answer is taken only where it can hardly be bettered.
+const CERTAIN_SCORE = 0.85;
 const CANDIDATES = 8;
+const LISTED = 24;
 // A fine texture that lies across the bins correlates at 0.5 or so before it is registered.
 const LEAST_COARSE_SCORE = 0.3;
 // Registration pulls in from 4 px, so peaks closer than this lead to the same place.
@@ -23,6 +28,13 @@ const TRY_AFFINE_BELOW = 0.9;
 const AMBIGUOUS_WITHIN = 0.05;
 const AMBIGUOUS_SHARE = 0.4;
 
+/** Every place where a template fits, best first; those below the lowest score worth a look are left out. */
+export type FitList = (
+  image: LumaImage,
+  template: Template,
+  options?: SearchOptions,
+) => readonly TemplateFit[];
+
 /**
  * Makes a search of a whole image or a part of it out of a way to correlate: a map of the binned image, its highest
  * peaks, and the registration of each to a fraction of a pixel. Light, contrast and bit depth may differ from
@@ -32,24 +44,62 @@ export function makeSearch(correlate: CorrelationMap): TemplateSearch {
   return (image, template, options = {}) => {
     const area = searchArea(image, template, options);
     if (area.width < template.widthPx || area.height < template.heightPx) return null;
-    const bin = Math.min(template.widthPx, template.heightPx) < LEAST_FOR_BINNING_PX ? 1 : 2;
-    const scale = FULL_SCALE_DN / image.maxValue;
-    const picture = binned(image.data, image.width, area, bin, scale);
-    const whole = { left: 0, top: 0, width: template.widthPx, height: template.heightPx };
-    const patch = binned(template.raw, template.widthPx, whole, bin, 1);
-    const map = correlate(picture, patch);
-    const columns = picture.width - patch.width + 1;
-    const peaks = highestPeaks(map, columns, CANDIDATES, LEAST_COARSE_SCORE, PEAKS_APART_PX / bin);
-    const starts = peaks.map(({ column, row }) => ({
-      x: area.left + bin * column + (template.widthPx - 1) / 2 + template.pointXPx,
-      y: area.top + bin * row + (template.heightPx - 1) / 2 + template.pointYPx,
-    }));
-    return choose(registerAll(image, template, starts), options.minScore ?? DEFAULT_LEAST_SCORE);
+    const minScore = options.minScore ?? DEFAULT_LEAST_SCORE;
+    let found: FoundTemplate | null = null;
+    for (const bin of binnings(template, area)) {
+      const starts = coarsePlaces(correlate, image, template, area, bin, CANDIDATES);
+      found = choose(registerAll(image, template, starts), minScore);
+      if (found && found.score >= CERTAIN_SCORE && !found.ambiguous) break;
+    }
+    return found;
   };
 }
 
 /** The light search, for regions: plain sums, nothing to load. */
 export const searchCoarsely: TemplateSearch = makeSearch(correlatePlainly);
+
+/** All places that look like the template within a part of an image, for judging how unique it is. */
+export const listFits: FitList = (image, template, options = {}) => {
+  const area = searchArea(image, template, options);
+  if (area.width < template.widthPx || area.height < template.heightPx) return [];
+  const [bin = 1] = binnings(template, area).slice(-1);
+  const fits = registerAll(
+    image,
+    template,
+    coarsePlaces(correlatePlainly, image, template, area, bin, LISTED),
+  );
+  return fits.filter((fit) => fit.score >= (options.minScore ?? DEFAULT_LEAST_SCORE));
+};
+
+/** The binnings to try, coarsest first: a coarse one is many times faster, but sees no fine texture. */
+function binnings(template: Template, area: Area): readonly number[] {
+  const side = Math.min(template.widthPx, template.heightPx);
+  if (side < LEAST_FOR_BINNING_PX) return [1];
+  const large = side >= LEAST_FOR_COARSE_BINNING_PX && area.width * area.height > LARGE_AREA_PX;
+  return large ? [4, 2] : [2];
+}
+
+/** Where the binned template correlates best with the binned image, as places of the marked point. */
+function coarsePlaces(
+  correlate: CorrelationMap,
+  image: LumaImage,
+  template: Template,
+  area: Area,
+  bin: number,
+  most: number,
+): { readonly x: number; readonly y: number }[] {
+  const picture = binned(image.data, image.width, area, bin, FULL_SCALE_DN / image.maxValue);
+  const whole = { left: 0, top: 0, width: template.widthPx, height: template.heightPx };
+  const patch = binned(template.raw, template.widthPx, whole, bin, 1);
+  const map = correlate(picture, patch);
+  const columns = picture.width - patch.width + 1;
+  return highestPeaks(map, columns, most, LEAST_COARSE_SCORE, PEAKS_APART_PX / bin).map(
+    ({ column, row }) => ({
+      x: area.left + bin * column + (template.widthPx - 1) / 2 + template.pointXPx,
+      y: area.top + bin * row + (template.heightPx - 1) / 2 + template.pointYPx,
+    }),
+  );
+}
 
 interface Area {
   readonly left: number;
@@ -79,8 +129,10 @@ function binned(data: ArrayLike<number>, stride: number, area: Area, bin: number
   for (let row = 0, to = 0; row < height; row++) {
     for (let column = 0; column < width; column++, to++) {
       const at = (area.top + bin * row) * stride + area.left + bin * column;
-      let sum = data[at]!;
-      if (bin === 2) sum += data[at + 1]! + data[at + stride]! + data[at + stride + 1]!;
+      let sum = 0;
+      for (let j = 0; j < bin; j++) {
+        for (let k = 0; k < bin; k++) sum += data[at + j * stride + k]!;
+      }
       out[to] = sum * share;
     }
   }

@@ -9,9 +9,10 @@ export interface SteepestDescent {
   readonly energy: number;
   /** One image per parameter, one after the other, orthogonal to a constant and to the template. */
   readonly images: Float64Array;
-  /** Their Gauss-Newton matrix, `parameters` * `parameters`, and its inverse. */
+  /** Their Gauss-Newton matrix, `parameters` * `parameters`. */
   readonly hessian: Float64Array;
-  readonly inverseHessian: Float64Array;
+  /** Null where the template has no texture, or none along one direction. */
+  readonly inverseHessian: Float64Array | null;
   readonly parameters: 2 | 6;
 }
 
@@ -20,8 +21,6 @@ export interface SteepestDescent {
  * 20 years on", IJCV 56, 2004) for a translation (x, y) or an affine warp (x, y, xx, xy, yx, yy about the
  * patch's centre). Gain and offset of the frame are nuisance parameters: each image is made orthogonal to the
  * constant and to the template, so that neither moves the answer.
- *
- * @throws Error where the template has no texture, or none along one direction
  */
 export function steepestDescent(template: Template, parameters: 2 | 6): SteepestDescent {
   const { widthPx, heightPx, values, gradientX, gradientY } = template;
@@ -54,9 +53,24 @@ export function steepestDescent(template: Template, parameters: 2 | 6): Steepest
       hessian[b * parameters + a] = sum;
     }
   }
-  const inverseHessian = energy > 0 ? invertSymmetric(hessian, parameters) : null;
-  if (!inverseHessian) throw new Error('a template without texture in two directions cannot be registered');
-  return { centred, energy, images, hessian, inverseHessian, parameters };
+  return {
+    centred,
+    energy,
+    images,
+    hessian,
+    inverseHessian: invertSymmetric(hessian, parameters),
+    parameters,
+  };
+}
+
+/**
+ * The inverse Gauss-Newton matrix of a template that is to be registered.
+ *
+ * @throws Error where there is none: `judgeSpot` tells so beforehand
+ */
+export function requireInverse(descent: SteepestDescent): Float64Array {
+  if (descent.inverseHessian) return descent.inverseHessian;
+  throw new Error('a template without texture in two directions cannot be registered');
 }
 
 function lessMean(values: Float64Array): Float64Array {
@@ -71,7 +85,7 @@ function project(images: Float64Array, start: number, centred: Float64Array, ene
   const count = centred.length;
   let sum = 0;
   for (let i = 0; i < count; i++) sum += images[start + i]!;
-  const along = dot(images, start, centred, 0, count) / energy;
+  const along = energy > 0 ? dot(images, start, centred, 0, count) / energy : 0;
   for (let i = 0; i < count; i++) images[start + i]! -= sum / count + along * centred[i]!;
 }
 

@@ -23,10 +23,10 @@ export interface MeasuredStep {
   readonly y: number;
   /** ZNCC between the smoothed template and the smoothed frame, at most 1. */
   readonly score: number;
-  /** Standard uncertainty of this position from image noise alone, per axis, root mean square of both axes. */
-  readonly uPx: number;
-  readonly uXPx: number;
-  readonly uYPx: number;
+  /** Standard uncertainty of this position from image noise alone, per axis, root mean square of both; null if unknown. */
+  readonly uPx: number | null;
+  readonly uXPx: number | null;
+  readonly uYPx: number | null;
   readonly reason: TrackReason | null;
   /** Pixels left between the patch and the nearest border of the region; below 0 it is cut off. */
   readonly roomPx: number;

@@ -1,0 +1,254 @@
+import { AdaptiveRegistrar, type MotionModel } from './adaptive-registrar.ts';
+import { believe } from './believe.ts';
+import { chooseFit, type Point, SearchPlan } from './find-again.ts';
+import type { LumaImage } from './luma-image.ts';
+import type { Deformation } from './patch-sampler.ts';
+import { expectedScore } from './patch-texture.ts';
+import { Predictor } from './predictor.ts';
+import { type Region, roomPx } from './region.ts';
+import type { Registration } from './registration.ts';
+import { RegistrationUncertainty } from './registration-uncertainty.ts';
+import { ScoreHistory } from './score-history.ts';
+import { searchCoarsely } from './search-image.ts';
+import type { Template } from './template.ts';
+import type { FoundTemplate, TemplateSearch } from './template-search.ts';
+import type { LostStep, MeasuredStep, TrackReason, TrackStep } from './track-step.ts';
+import { Travel, type TravelBox } from './travel.ts';
+
+// Frames that a marker found elsewhere, or one of two alike, must stay with before it is trusted.
+const FRAMES_TO_CONFIRM = 10;
+// A region should have room for two more steps, and for what patch and prediction need.
+const ROOM_PX = 6;
+const ROOM_STEPS = 2;
+
+/** How a marker is tracked. */
+export interface MarkerTrackerOptions {
+  /** Where the marked point is in the first frame, within 4 px, coded frame; sought in the region when not given. */
+  readonly start?: Point;
+  /** 'auto', which changes from translation to affine when the part is seen to turn, unless said. */
+  readonly model?: MotionModel | 'auto';
+  /** How to find a marker that is not where it should be; `searchCoarsely` unless said. */
+  readonly search?: TemplateSearch;
+}
+
+/** A registration that is taken for the marker, at (x, y) of the coded frame. */
+interface Accepted extends Point {
+  readonly registration: Registration;
+  readonly reason: TrackReason | null;
+}
+
+/**
+ * Follows one marker from frame to frame: predicts its place, registers its template there, and judges the outcome.
+ * The template stays the same, so nothing drifts. A marker that is covered or gone is lost, which is a gap and never
+ * an estimated place; it is sought again where it was last seen, then in the region. Frames may be given forwards or
+ * backwards in time. Positions are in pixels of the coded frame.
+ */
+export class MarkerTracker {
+  private readonly registrar: AdaptiveRegistrar;
+  private readonly history: ScoreHistory;
+  private readonly predictor = new Predictor();
+  private readonly travelled = new Travel();
+  private readonly uncertainties = new Map<MotionModel, RegistrationUncertainty>();
+  private readonly search: TemplateSearch;
+  private readonly plan: SearchPlan;
+  private readonly patchPx: number;
+  private held: Point | null;
+  private lostFrames = 0;
+  private unconfirmed: { readonly reason: TrackReason; frames: number } | null = null;
+  private found: FoundTemplate | null = null;
+  // The best of what was refused in this frame.
+  private refusal: TrackReason = 'covered';
+  private bestRefused = -1;
+
+  /** @throws Error where the template has no texture in two directions (`judgeSpot` says so beforehand) */
+  constructor(
+    private readonly template: Template,
+    options: MarkerTrackerOptions = {},
+  ) {
+    this.registrar = new AdaptiveRegistrar(template, options.model ?? 'auto');
+    this.history = new ScoreHistory(expectedScore(template));
+    this.search = options.search ?? searchCoarsely;
+    this.patchPx = Math.min(template.widthPx, template.heightPx);
+    this.plan = new SearchPlan(this.patchPx);
+    this.held = options.start ? { x: options.start.x, y: options.start.y } : null;
+    if (this.held) this.travelled.include(this.held.x, this.held.y);
+  }
+
+  /** The motion model in use; it changes from translation to affine at most once. */
+  get model(): MotionModel {
+    return this.registrar.model;
+  }
+
+  /** How the marker was deformed in the last measured frame. */
+  get deformation(): Deformation {
+    return this.registrar.deformation;
+  }
+
+  /** The last known place; null before the first. A place to look at, not a measurement. */
+  get lastKnown(): Point | null {
+    return this.held;
+  }
+
+  /** The range of the trusted positions so far; null before the first. */
+  get travel(): TravelBox | null {
+    return this.travelled.box;
+  }
+
+  /** What the last search found, coded frame; null when none was needed or it found nothing. */
+  get lastSearch(): FoundTemplate | null {
+    return this.found;
+  }
+
+  /**
+   * Looks for the marker in the next frame.
+   *
+   * @param image the frame, or the region of it that the marker should be in
+   * @param offsetX, offsetY the coded frame's pixel at the image's upper left corner
+   * @param timeS the frame's time, true seconds
+   */
+  step(image: LumaImage, offsetX: number, offsetY: number, timeS: number): TrackStep {
+    const region = { image, offsetX, offsetY };
+    this.refusal = 'covered';
+    this.bestRefused = -1;
+    const expected = this.lostFrames > 0 ? this.held : (this.predictor.predict(timeS) ?? this.held);
+    let accepted = expected && this.tryAt(region, expected);
+    if (!accepted && expected && this.held && distance(expected, this.held) > 1) {
+      accepted = this.tryAt(region, this.held);
+    }
+    accepted ??= this.trySearch(region, expected);
+    return accepted ? this.keep(region, timeS, accepted) : this.lose(region);
+  }
+
+  /** Registers from an expected place. */
+  private tryAt(region: Region, expected: Point): Accepted | null {
+    const { image, offsetX, offsetY } = region;
+    const { history, template } = this;
+    const registration = this.registrar.register(image, expected.x - offsetX, expected.y - offsetY, history);
+    const place = { x: registration.x + offsetX, y: registration.y + offsetY };
+    const { believed, reason } = believe(registration, history.limit, {
+      surprisePx: distance(place, expected),
+      roomPx: roomPx(region, template, place.x, place.y),
+      largestStepPx: this.predictor.largestStepPx(),
+      patchPx: this.patchPx,
+      aliasPx: template.aliasPx,
+      wasLost: this.lostFrames > 0,
+    });
+    if (believed) return { registration, reason, ...place };
+    this.refuse(reason ?? 'covered', registration.score);
+    return null;
+  }
+
+  /** Searches the region, near where the marker was expected unless it is time to look through all of it. */
+  private trySearch(region: Region, expected: Point | null): Accepted | null {
+    const { image, offsetX, offsetY } = region;
+    const { history, travelled } = this;
+    const near = this.plan.near(
+      expected,
+      this.lostFrames,
+      travelled.extentPx,
+      this.predictor.largestStepPx(),
+    );
+    const found = this.search(image, this.template, {
+      minScore: this.plan.leastScore(history.usual, expected !== null),
+      ...(near && { near: { x: near.x - offsetX, y: near.y - offsetY, radiusPx: near.radiusPx } }),
+    });
+    this.found = found && inCodedFrame(found, region);
+    if (!this.found) return null;
+    const fit = chooseFit(this.found, expected);
+    if (!fit) {
+      this.refuse('ambiguous', this.found.score);
+      return null;
+    }
+
+    const elsewhere = expected !== null && !travelled.allows(fit.x, fit.y, this.patchPx / 2);
+    if (elsewhere && fit.score < history.limit) {
+      this.refuse('covered', fit.score);
+      return null;
+    }
+    const accepted = this.tryAt(region, fit);
+    if (accepted && (elsewhere || this.found.ambiguous)) {
+      const reason = this.found.ambiguous ? 'ambiguous' : 'found-elsewhere';
+      this.unconfirmed = { reason, frames: FRAMES_TO_CONFIRM };
+    }
+    return accepted;
+  }
+
+  private refuse(reason: TrackReason, score: number): void {
+    if (score <= this.bestRefused) return;
+    this.bestRefused = score;
+    this.refusal = reason;
+  }
+
+  /** Remembers a measured frame. */
+  private keep(region: Region, timeS: number, accepted: Accepted): MeasuredStep {
+    const { registration, x, y } = accepted;
+    if (this.lostFrames > 0) this.predictor.clear();
+    this.lostFrames = 0;
+    this.held = { x, y };
+    this.predictor.push(timeS, x, y);
+    this.history.push(registration.score);
+    const reason = accepted.reason ?? this.unconfirmed?.reason ?? null;
+    if (this.unconfirmed && --this.unconfirmed.frames <= 0) this.unconfirmed = null;
+    if (reason === null) this.travelled.include(x, y);
+
+    const covariance = this.uncertaintyOf(this.registrar.lastModel).ofRegistration(registration);
+    const room = roomPx(region, this.template, x, y);
+    return {
+      state: reason === null ? 'ok' : 'doubtful',
+      x,
+      y,
+      score: registration.score,
+      uPx: covariance && Math.sqrt((covariance.xx + covariance.yy) / 2),
+      uXPx: covariance && Math.sqrt(covariance.xx),
+      uYPx: covariance && Math.sqrt(covariance.yy),
+      reason,
+      roomPx: room,
+      nearBorder: this.isNearBorder(room),
+    };
+  }
+
+  /** Remembers that the marker was not found; its last place is held, not extended. */
+  private lose(region: Region): LostStep {
+    this.lostFrames++;
+    const room = this.held && roomPx(region, this.template, this.held.x, this.held.y);
+    return {
+      state: 'lost',
+      x: null,
+      y: null,
+      score: this.bestRefused,
+      uPx: null,
+      uXPx: null,
+      uYPx: null,
+      reason: this.refusal,
+      roomPx: room,
+      nearBorder: room !== null && (this.refusal === 'at-border' || this.isNearBorder(room)),
+    };
+  }
+
+  private isNearBorder(room: number): boolean {
+    return room < ROOM_PX + ROOM_STEPS * this.predictor.largestStepPx();
+  }
+
+  private uncertaintyOf(model: MotionModel): RegistrationUncertainty {
+    let uncertainty = this.uncertainties.get(model);
+    if (!uncertainty) {
+      uncertainty = new RegistrationUncertainty(this.template, model === 'affine' ? 6 : 2);
+      this.uncertainties.set(model, uncertainty);
+    }
+    return uncertainty;
+  }
+}
+
+function distance(a: Point, b: Point): number {
+  return Math.hypot(a.x - b.x, a.y - b.y);
+}
+
+function inCodedFrame(found: FoundTemplate, { offsetX, offsetY }: Region): FoundTemplate {
+  const { second } = found;
+  return {
+    ...found,
+    x: found.x + offsetX,
+    y: found.y + offsetY,
+    second: second && { x: second.x + offsetX, y: second.y + offsetY, score: second.score },
+  };
+}
