@@ -31,8 +31,11 @@ export interface DwellNoise {
   readonly floorMm: number;
 }
 
-/** What is observed at each dwell: the amplitude alone, or the lag as well. */
-export type Observed = 'amplitude' | 'amplitude-and-lag';
+/**
+ * What is observed at each dwell: the amplitude alone, the lag behind the exciter as well, or a lag counted from an
+ * unknown zero (behind a trigger light, say), which has to be found with the rest.
+ */
+export type Observed = 'amplitude' | 'amplitude-and-lag' | 'amplitude-and-lag-from-unknown-zero';
 
 /** The frame in which frequencies are chosen. */
 export interface PlanSetting {

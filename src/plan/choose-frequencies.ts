@@ -1,0 +1,147 @@
+import { type DesignGoal, designGoodness } from './design-criterion.ts';
+import { addDwell, INFORMATION_SIZE, type Oscillator } from './dwell-information.ts';
+import type { PlanSetting } from './plan-points.ts';
+
+/** The task of choosing drive frequencies. */
+export interface FrequencyChoice {
+  readonly setting: PlanSetting;
+  /** Equally likely oscillators over which the goodness is averaged; one where it is known. */
+  readonly oscillators: readonly Oscillator[];
+  /** Information already held about each oscillator in their order, see `noInformation`. */
+  readonly held: readonly Float64Array[];
+  readonly goal: DesignGoal;
+  /** Frequencies to choose from, Hz, ascending. */
+  readonly candidates: readonly number[];
+  readonly count: number;
+  /** No two chosen frequencies closer than this, Hz; 0 allows repeats. */
+  readonly leastSpacingHz: number;
+}
+
+const CELLS = INFORMATION_SIZE ** 2;
+const EXCHANGE_ROUNDS = 8;
+
+/** Mean goodness over the oscillators of what is held plus dwells at the frequencies. */
+export function meanGoodness(choice: FrequencyChoice, frequencies: readonly number[]): number {
+  const total = new Float64Array(CELLS);
+  let sum = 0;
+  for (let k = 0; k < choice.oscillators.length; k++) {
+    total.set(choice.held[k]!);
+    for (const driveHz of frequencies) addDwell(total, choice.setting, choice.oscillators[k]!, driveHz);
+    sum += designGoodness(total, choice.goal);
+  }
+  return sum / choice.oscillators.length;
+}
+
+/**
+ * Chooses drive frequencies that make an experiment most telling: one at a time first, then each exchanged for a
+ * better candidate until none is found.
+ *
+ * @returns `count` frequencies, ascending; fewer where spacing leaves no more candidates
+ * Source: exchange algorithm, V. V. Fedorov, Theory of Optimal Experiments (1972) (from memory), on the mean
+ * logarithm of the determinant (Bayesian D-optimality, Chaloner and Verdinelli, Statist. Sci. 10 (1995) 273).
+ */
+export function chooseFrequencies(choice: FrequencyChoice): number[] {
+  const { oscillators, candidates, count, leastSpacingHz } = choice;
+  const people = oscillators.length;
+  // what a dwell at each candidate tells of each oscillator, once for all
+  const told = new Float64Array(candidates.length * people * CELLS);
+  for (let c = 0; c < candidates.length; c++) {
+    for (let k = 0; k < people; k++) {
+      const start = (c * people + k) * CELLS;
+      addDwell(told.subarray(start, start + CELLS), choice.setting, oscillators[k]!, candidates[c]!);
+    }
+  }
+  const held = new Float64Array(people * CELLS);
+  choice.held.forEach((information, k) => {
+    held.set(information, k * CELLS);
+  });
+  const chosen: number[] = [];
+  const trial = new Float64Array(CELLS);
+
+  const add = (c: number, sign: 1 | -1) => {
+    const start = c * people * CELLS;
+    for (let i = 0; i < people * CELLS; i++) held[i]! += sign * told[start + i]!;
+  };
+  const goodnessWith = (c: number): number => {
+    let sum = 0;
+    for (let k = 0; k < people; k++) {
+      const from = (c * people + k) * CELLS;
+      for (let i = 0; i < CELLS; i++) trial[i] = held[k * CELLS + i]! + told[from + i]!;
+      sum += designGoodness(trial, choice.goal);
+    }
+    return sum / people;
+  };
+  const allowed = (c: number) =>
+    leastSpacingHz === 0 ||
+    chosen.every((other) => Math.abs(candidates[c]! - candidates[other]!) > 0.999 * leastSpacingHz);
+  const best = (): number => {
+    let winner = -1;
+    let winning = Number.NEGATIVE_INFINITY;
+    for (let c = 0; c < candidates.length; c++) {
+      if (!allowed(c)) continue;
+      const goodness = goodnessWith(c);
+      if (goodness > winning || winner < 0) {
+        winner = c;
+        winning = goodness;
+      }
+    }
+    return winner;
+  };
+
+  while (chosen.length < count) {
+    const next = best();
+    if (next < 0) break;
+    chosen.push(next);
+    add(next, 1);
+  }
+  for (let round = 0, changed = true; changed && round < EXCHANGE_ROUNDS; round++) {
+    changed = false;
+    for (let slot = 0; slot < chosen.length; slot++) {
+      const [old] = chosen.splice(slot, 1);
+      if (old === undefined) continue;
+      add(old, -1);
+      const next = best();
+      const better = next >= 0 && goodnessWith(next) > goodnessWith(old) + 1e-9;
+      chosen.splice(slot, 0, better ? next : old);
+      add(better ? next : old, 1);
+      changed ||= better;
+    }
+  }
+  return chosen.map((c) => candidates[c]!).sort((a, b) => a - b);
+}
+
+/**
+ * Moves chosen frequencies off the grid of candidates to where the goodness is greatest, one after the other, each
+ * within `reachHz` and clear of its neighbours. No frequency leaves [lowHz, highHz].
+ */
+export function refineFrequencies(
+  choice: FrequencyChoice,
+  start: readonly number[],
+  reachHz: number,
+  [lowHz, highHz]: readonly [number, number],
+  rounds = 3,
+): number[] {
+  const frequencies = [...start].sort((a, b) => a - b);
+  const ratio = (Math.sqrt(5) - 1) / 2;
+  let reach = reachHz;
+  for (let round = 0; round < rounds; round++) {
+    for (let slot = 0; slot < frequencies.length; slot++) {
+      const here = frequencies[slot]!;
+      const goodness = (driveHz: number) => meanGoodness(choice, frequencies.with(slot, driveHz));
+      let low = Math.max(here - reach, (frequencies[slot - 1] ?? -Infinity) + choice.leastSpacingHz, lowHz);
+      let high = Math.min(here + reach, (frequencies[slot + 1] ?? Infinity) - choice.leastSpacingHz, highHz);
+      if (!(high > low)) continue;
+      const tolerance = 1e-7 * here;
+      while (high - low > tolerance) {
+        const left = high - ratio * (high - low);
+        const right = low + ratio * (high - low);
+        if (goodness(left) > goodness(right)) high = right;
+        else low = left;
+      }
+      const found = (low + high) / 2;
+      if (goodness(found) > goodness(here)) frequencies[slot] = found;
+    }
+    reach /= 2;
+  }
+  return frequencies;
+}
