@@ -1,7 +1,7 @@
 import { InputError } from '../errors.ts';
 import type { Warning } from '../numeric/warning.ts';
 import { type FundamentalMotion, fundamentalMotion, scatter } from './axis-fit.ts';
-import { type PointPx, type PointTrack, seenCount } from './point-track.ts';
+import { isSeen, type PointPx, type PointTrack, seenCount } from './point-track.ts';
 
 const DEG_PER_RAD = 180 / Math.PI;
 
@@ -16,6 +16,9 @@ const STRAIGHT_ELLIPTICITY = 0.05;
 
 /** An angle known worse than this costs more than 0.1 % of the amplitude at two standard uncertainties. */
 const UNCERTAIN_ANGLE_DEG = 1.3;
+
+/** A motion below this fraction of the coordinates' own size is rounding, not motion. */
+const STANDSTILL = 1e-9;
 
 /** Frames below which a direction is not looked for. */
 const MIN_FRAMES = 8;
@@ -59,7 +62,7 @@ export function axisFromMotion(track: PointTrack, frequencyHz: number | null): M
     throw new InputError(`Drive frequency is ${frequencyHz} Hz; give a frequency above 0.`);
   }
   const motion = (frequencyHz === null ? null : fundamentalMotion(track, frequencyHz)) ?? scatter(track);
-  if (motion === null || !(motion.major > 0)) return null;
+  if (motion === null || !(motion.major > STANDSTILL * size(track))) return null;
   const angleDeg = signedAxisAngleDeg(motion.angleRad * DEG_PER_RAD);
   const uAngleDeg = motion.uAngleRad * DEG_PER_RAD;
   return {
@@ -128,6 +131,15 @@ export function compareAxes(response: MotionAxis, drive: MotionAxis): AxisCompar
 export function axisAngleRelU(axis: MotionAxis): number {
   const u = (axis.uAngleDeg ?? 0) / DEG_PER_RAD;
   return (Math.sqrt(3) / 2) * u * u;
+}
+
+/** Largest coordinate of the track. */
+function size(track: PointTrack): number {
+  let largest = 0;
+  for (let i = 0; i < track.x.length; i++) {
+    if (isSeen(track, i)) largest = Math.max(largest, Math.abs(track.x[i]!), Math.abs(track.y[i]!));
+  }
+  return largest;
 }
 
 function directionOf(angleDeg: number): { directionX: number; directionY: number } {
