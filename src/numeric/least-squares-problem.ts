@@ -29,6 +29,8 @@ export interface LeastSquaresOptions {
   readonly maxEvaluations?: number;
   /** Radius of the first trust region as a multiple of the scaled start values. Default 1. */
   readonly initialRadius?: number;
+  /** Spend a few more steps to reach the last digits after a stop by `reduction`. Default true. */
+  readonly polish?: boolean;
 }
 
 /**

@@ -11,7 +11,8 @@ import { unscaledCovariance } from './unscaled-covariance.ts';
 const SMALLEST_GAIN = 1e-4;
 // Stopping on a short step far from a right angle means the solver was stuck, not that it arrived.
 const STUCK_COSINE = 1e-3;
-// Residuals this small against those at the start are rounding: their angle with the Jacobian says nothing.
+// Residuals this small, against those at the start or against what the parameters put into the model, are
+// rounding: their angle with the Jacobian says nothing.
 const ROUNDING_FRACTION = 1e-12;
 // Final steps go on as long as each is shorter than this share of the one before.
 const POLISH_RATE = 0.9;
@@ -41,6 +42,7 @@ export function solveLeastSquares(
     reductionTolerance = 1e-14,
     maxEvaluations = 200 * (columns + 1),
     initialRadius = 1,
+    polish: toTheLastDigit = true,
   } = options;
 
   let parameters = Float64Array.from(start);
@@ -90,7 +92,7 @@ export function solveLeastSquares(
       // A promise below the rounding of the sum can be neither kept nor broken.
       const unverifiable = !accepted && step.predictedReduction <= SUM_ROUNDING * before;
       if ((flat && gain <= 2) || unverifiable) {
-        polish();
+        if (toTheLastDigit) polish();
         return finish('reduction', cosine);
       }
       const shortest = stepTolerance * scaledLength(parameters, scale);
@@ -122,7 +124,8 @@ export function solveLeastSquares(
   function finish(stopReason: StopReason, cosine: number): LeastSquaresSolution {
     const failed = stopReason === 'not-finite';
     const arrived = stopReason === 'gradient' || stopReason === 'reduction' || stopReason === 'step';
-    const exact = sum <= ROUNDING_FRACTION ** 2 * startSum;
+    const exact =
+      Math.sqrt(sum) <= ROUNDING_FRACTION * (Math.sqrt(startSum) + scaledLength(parameters, scale));
     const stuck = stopReason === 'step' && cosine > STUCK_COSINE && !exact;
     if (!failed) problem.jacobian(parameters, jacobian);
     const covariance = failed ? null : unscaledCovariance(jacobian, rows, columns, scale);

@@ -10,13 +10,22 @@ const NUMERATOR: Readonly<Record<Excitation, (loss: string) => string>> = {
 
 const LOSS: Readonly<Record<Damping, string>> = { viscous: '2iζr', structural: 'iη' };
 
+/** Terms that a fit may add to the model. */
+export interface ExtraTerms {
+  readonly rigidOffset?: boolean;
+  readonly slowResidual?: boolean;
+}
+
 /**
  * The formula of a model as plain text, such as `X = G · r² / (1 − r² + 2iζr), r = f/fn`.
- * X is the complex response, G the static gain, f the drive frequency, fn the natural frequency.
+ * X is the complex response, G the static gain, f the drive frequency, fn the natural frequency; R is the rigid
+ * offset, S the slow residual and fm the middle of the frequency range, where they are fitted.
  */
-export function formulaText(model: ResonanceModel): string {
+export function formulaText(model: ResonanceModel, terms: ExtraTerms = {}): string {
   const loss = LOSS[model.damping];
-  return `X = G · ${NUMERATOR[model.excitation](loss)} / (1 − r² + ${loss}), r = f/fn`;
+  const offset = terms.rigidOffset === true ? ' + R' : '';
+  const slow = terms.slowResidual === true ? ' + S · (f/fm − 1)' : '';
+  return `X = G · ${NUMERATOR[model.excitation](loss)} / (1 − r² + ${loss})${offset}${slow}, r = f/fn`;
 }
 
 const EXCITATION_TEXT: Readonly<Record<Excitation, string>> = {
@@ -28,8 +37,10 @@ const EXCITATION_TEXT: Readonly<Record<Excitation, string>> = {
 };
 
 /** What a model stands for in words, such as `force on the moving mass, viscous damping`. */
-export function modelText(model: ResonanceModel): string {
-  return `${EXCITATION_TEXT[model.excitation]}, ${model.damping} damping`;
+export function modelText(model: ResonanceModel, terms: ExtraTerms = {}): string {
+  const offset = terms.rigidOffset === true ? ', rigid offset' : '';
+  const slow = terms.slowResidual === true ? ', slow residual' : '';
+  return `${EXCITATION_TEXT[model.excitation]}, ${model.damping} damping${offset}${slow}`;
 }
 
 /**
