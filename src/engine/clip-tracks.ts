@@ -21,8 +21,6 @@ export interface MarkerTrack {
   readonly patchPx: number;
   /** Fraction of the patch that is clipped white or black where it was marked, 0 to 1. */
   readonly saturatedFraction: number;
-  /** Sharpness of the marker in motion relative to where it was marked, 1 is as sharp; null where it cannot be told. */
-  readonly sharpness: number | null;
   /** Why it could not be followed; null where it could. */
   readonly error: string | null;
 }
