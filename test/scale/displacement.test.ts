@@ -70,7 +70,7 @@ test('camera shake and an oblique plane together: the true motion comes back', (
     [220, 110],
     [-190, 100],
   ] as const;
-  const plane = planeMapping(corners.map((mm) => ({ at: see(...mm), mm })));
+  const plane = planeMapping(corners.map((mm) => ({ at: see(mm[0], mm[1]), mm })));
   const shakeX = timesS.map((t) => 3 * Math.sin(2 * Math.PI * 0.9 * t));
   const seen = Array.from(truthMm, (s) => see(60 + s, 20));
   const marker = {
