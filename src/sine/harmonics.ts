@@ -10,6 +10,9 @@ export const HIGHEST_HARMONIC = 5;
 // Two frequencies closer than this many times 1/duration cannot be told apart safely.
 const RESOLUTION = 1.5;
 
+// In a shorter record harmonics, offset and slope are too much alike.
+const FEWEST_PERIODS = 2;
+
 /** Where a frequency shows when sampled at `rateHz`: in 0 to rateHz/2. */
 export function aliasHz(frequencyHz: number, rateHz: number): number {
   return Math.abs(frequencyHz - rateHz * Math.round(frequencyHz / rateHz));
@@ -47,7 +50,7 @@ export function harmonicRatios(timesS: Float64Array, values: Float64Array, frequ
   const none = new Array<Measured>(HIGHEST_HARMONIC - 1).fill(NOT_MEASURED);
   const samples = presentSamples(timesS, values);
   const frames = samples.timesS.length;
-  if (!(frequencyHz > 0) || frames < 8) return none;
+  if (!(frequencyHz > 0) || frames < 8 || durationS(samples) * frequencyHz < FEWEST_PERIODS) return none;
   const multiples = separableHarmonics(samples, frequencyHz);
   const model = { frequencyHz, ...recordCentre(samples), baselineTerms: 2, harmonics: multiples };
   const columns = columnCount(model);
