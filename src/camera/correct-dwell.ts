@@ -3,7 +3,7 @@ import type { Warning } from '../numeric/warning.ts';
 import { foldFrequency, unfoldPhase } from './aliasing.ts';
 import type { Budget } from './amplitude-budget.ts';
 import { type CodecLimit, codecLimit } from './codec-limit.ts';
-import { amplitudeBudget, lagBudget } from './dwell-budget.ts';
+import { amplitudeBudget, codecEvidence, lagBudget } from './dwell-budget.ts';
 import type { DwellFacts, RawLag } from './dwell-facts.ts';
 import { exposureCorrection, unknownExposure } from './exposure-blur.ts';
 import { filmingWarnings, isRefused } from './filming-warnings.ts';
@@ -81,9 +81,8 @@ const UNKNOWN = {
 } as const;
 
 function codecOf(facts: DwellFacts): CodecLimit {
-  const amplitudePx = facts.amplitude.amplitudeMm / facts.amplitude.mmPerPx;
-  const still = facts.stillPatchAmplitudePx;
-  return codecLimit(amplitudePx, facts.filming.compression, still === null ? null : { amplitudePx: still });
+  const { amplitudeMm, mmPerPx } = facts.amplitude;
+  return codecLimit(amplitudeMm / mmPerPx, facts.filming.compression, codecEvidence(facts));
 }
 
 function trueLag(facts: DwellFacts, lag: RawLag, shiftDeg: number, budget: Budget | null): Measured {

@@ -1,6 +1,6 @@
 import type { KnownCorrection } from '../numeric/warning.ts';
 import { type Budget, type BudgetEntry, type BudgetSource, combineBudget } from './amplitude-budget.ts';
-import { type CodecLimit, codecLimit } from './codec-limit.ts';
+import { type CodecEvidence, type CodecLimit, codecLimit } from './codec-limit.ts';
 import type { DwellFacts, RawLag } from './dwell-facts.ts';
 
 const DEG_PER_RAD = 180 / Math.PI;
@@ -49,14 +49,27 @@ export function lagBudget(facts: DwellFacts, lag: RawLag, rowsUDeg: number): Bud
   const seenPx = lag.driveAmplitudePx === null ? [responsePx] : [responsePx, lag.driveAmplitudePx];
   const turn = (movedPx: number, amplitudePx: number): number =>
     Math.atan2(movedPx, amplitudePx) * DEG_PER_RAD;
+  const evidence = codecEvidence(facts);
   const shakePx = (facts.stillPatchAmplitudePx ?? 0) * RANDOM_PHASE;
   return combineBudget([
     own('fit', lag.uFitDeg ?? 0, lag.dof),
     own('rolling shutter', rowsUDeg),
-    own('codec', Math.hypot(...seenPx.map((px) => turn(codecLimit(px, facts.filming.compression).uPx, px)))),
+    own(
+      'codec',
+      Math.hypot(...seenPx.map((px) => turn(codecLimit(px, facts.filming.compression, evidence).uPx, px))),
+    ),
     own('shake', Math.hypot(...seenPx.map((px) => turn(shakePx, px)))),
     ...facts.lagLines,
   ]);
+}
+
+/** What the dwell shows of its codec, in pixels. */
+export function codecEvidence(facts: DwellFacts): CodecEvidence {
+  const { residualRmsMm, mmPerPx } = facts.amplitude;
+  return {
+    residualRmsPx: residualRmsMm === null ? null : residualRmsMm / mmPerPx,
+    stillAmplitudePx: facts.stillPatchAmplitudePx,
+  };
 }
 
 /** A line that belongs to this dwell alone. */

@@ -34,6 +34,8 @@ export interface RawAmplitude {
   /** Standard uncertainty of the fit alone, mm; null where it gave none. */
   readonly uFitMm: number | null;
   readonly dof: number | null;
+  /** Root mean square residual of the fit, mm; null where not known. It tells how the codec behaves. */
+  readonly residualRmsMm: number | null;
   /** Scale where the marker moves, for the codec's sake. */
   readonly mmPerPx: number;
 }
