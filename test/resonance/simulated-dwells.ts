@@ -1,16 +1,10 @@
+import { seededRandom } from '../../src/numeric/seeded-random.ts';
 import { lagDeg, type ResonanceModel, unitAmplitude, unitResponse } from '../../src/resonance/models.ts';
 import type { ResonancePoint } from '../../src/resonance/resonance-points.ts';
 
-/** Seeded random numbers: uniform in (0, 1) by a 32-bit mixing generator, normal by Box and Muller. */
+/** Seeded normal numbers. */
 export function seededNormal(seed: number): () => number {
-  let state = seed >>> 0;
-  const uniform = () => {
-    state = (state + 0x6d2b79f5) >>> 0;
-    let t = Math.imul(state ^ (state >>> 15), 1 | state);
-    t = (t + Math.imul(t ^ (t >>> 7), 61 | t)) ^ t;
-    return (((t ^ (t >>> 14)) >>> 0) + 0.5) / 4294967296;
-  };
-  return () => Math.sqrt(-2 * Math.log(uniform())) * Math.cos(2 * Math.PI * uniform());
+  return seededRandom(seed).normal;
 }
 
 /** The truth of a simulated test. */
