@@ -5,11 +5,15 @@ import type { Measured } from '../numeric/measured.ts';
  * Lengths in mm, frequencies in Hz, angles in degrees, times in s. Amplitudes are zero-to-peak of the fundamental.
  */
 
+/** The format name in results.json. */
 export const RESULTS_FORMAT = 'dwellbook-results';
+/** The version of that format. */
 export const RESULTS_VERSION = 1;
 
+/** What was found of a dwell; the words are explained in the guide. */
 export type Verdict = 'steady' | 'settling' | 'beating' | 'drifting' | 'lost' | 'failed';
 
+/** One source of a dwell's uncertainty. */
 export interface BudgetLine {
   readonly source: string;
   /** Standard uncertainty in mm. */
@@ -18,6 +22,7 @@ export interface BudgetLine {
   readonly common: boolean;
 }
 
+/** What a clip is and how its markers fared. */
 export interface ClipResult {
   readonly id: string;
   readonly file: string;
@@ -34,6 +39,7 @@ export interface ClipResult {
   readonly error: string | null;
 }
 
+/** How well a marker was followed through a clip. */
 export interface MarkerResult {
   readonly id: string;
   readonly role: 'response' | 'drive' | 'ground';
@@ -44,6 +50,7 @@ export interface MarkerResult {
   readonly expectedUPx: number | null;
 }
 
+/** One dwell: what was measured, how sure it is, and what to do about it. */
 export interface DwellResult {
   readonly configuration: string;
   readonly id: string;
@@ -80,6 +87,7 @@ export interface DwellResult {
   readonly error: string | null;
 }
 
+/** One free decay. */
 export interface RingDownResult {
   readonly configuration: string;
   readonly id: string;
@@ -93,6 +101,7 @@ export interface RingDownResult {
   readonly error: string | null;
 }
 
+/** The resonance of one configuration. */
 export interface ResonanceResult {
   readonly configuration: string;
   readonly model: string;
@@ -109,20 +118,56 @@ export interface ResonanceResult {
   readonly peakAmplitude: Measured;
   readonly bandwidthHz: Measured;
   readonly staticGain: Measured;
+  readonly lossFactor: Measured;
+  readonly logDecrement: Measured;
+  /** Half-power points, Hz, and the usual approximation of the bandwidth, 2 zeta fn. */
+  readonly lowerHalfPowerHz: Measured;
+  readonly upperHalfPowerHz: Measured;
+  readonly classicBandwidthHz: Measured;
   /** Unit of staticGain and peakAmplitude: mm, or 1 where the drive amplitude is known. */
   readonly gainUnit: 'mm' | '1';
   readonly stiffness: Measured;
   readonly dampingCoefficient: Measured;
-  readonly intervals: Readonly<Record<string, readonly [number | null, number | null]>>;
+  /** Profile-likelihood intervals at the stated coverage; a side is null where the data do not bound it. */
+  readonly intervals: ResonanceIntervals;
+  readonly coverage: number;
+  readonly coverageFactor: number | null;
   /** Of static gain, natural frequency, damping ratio, in that order; null where nothing was fitted. */
   readonly correlation: readonly (readonly number[])[] | null;
   readonly chi2: number | null;
   readonly dof: number | null;
+  readonly aicc: number | null;
+  /** Each dwell beside the curve. */
+  readonly fitted: readonly FittedDwell[];
   readonly notes: readonly string[];
   readonly warnings: readonly string[];
   readonly error: string | null;
 }
 
+/** Lower and upper ends, or null where there is no interval. */
+export type Interval = readonly [number | null, number | null];
+
+/** Intervals of the fitted parameters. */
+export interface ResonanceIntervals {
+  readonly naturalHz: Interval | null;
+  readonly dampingRatio: Interval | null;
+  readonly staticGain: Interval | null;
+}
+
+/** One dwell beside the fitted curve. */
+export interface FittedDwell {
+  readonly dwell: string;
+  readonly driveHz: number;
+  readonly used: boolean;
+  /** Curve at the drive frequency: amplitude in `gainUnit`, lag in degrees. */
+  readonly amplitude: number | null;
+  readonly lagDeg: number | null;
+  /** Measured minus curve over the standard uncertainty. */
+  readonly amplitudeResidual: number | null;
+  readonly lagResidual: number | null;
+}
+
+/** Everything that was found out about a test. */
 export interface Results {
   readonly format: typeof RESULTS_FORMAT;
   readonly version: typeof RESULTS_VERSION;

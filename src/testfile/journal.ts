@@ -41,6 +41,14 @@ export class Journal {
     });
   }
 
+  /** Goes on with the journal that lies there. */
+  reopen(): Promise<void> {
+    return this.#queue(async () => {
+      await this.#handle?.close();
+      this.#handle = await open(this.path, 'a');
+    });
+  }
+
   /** Appends an edit; done when the operating system has it. */
   append(edit: Edit): Promise<void> {
     return this.#queue(() => this.#write({ edit }));

@@ -8,7 +8,9 @@ import * as z from 'zod';
  * and values that concern one dwell alone (a scale length of 0, a drive frequency of 0) fail that dwell when measured.
  */
 
+/** The format name in a test file. */
 export const TEST_FORMAT = 'dwellbook-test';
+/** The newest version of the format that this program writes and reads. */
 export const TEST_VERSION = 1;
 
 const pointPx = z.tuple([z.number(), z.number()]);
@@ -120,6 +122,7 @@ const ringdown = z.looseObject({
   excluded: z.string().optional(),
 });
 
+/** How a part can be driven. */
 export const EXCITATIONS = ['force', 'spring-end', 'base', 'base-relative', 'unbalance'] as const;
 
 const configuration = z.looseObject({
@@ -169,6 +172,7 @@ const planning = z.looseObject({
   dwells: z.int().min(3).max(1000).optional(),
 });
 
+/** Shape of a test file. */
 export const testSchema = z.looseObject({
   format: z.literal(TEST_FORMAT),
   version: z.literal(TEST_VERSION),
@@ -179,15 +183,27 @@ export const testSchema = z.looseObject({
   plan: planning.optional(),
 });
 
+/** A point of the frame as displayed, px. */
 export type PointPx = z.infer<typeof pointPx>;
+/** A whole test. */
 export type TestFile = z.infer<typeof testSchema>;
+/** A fixed camera position. */
 export type Setup = TestFile['setups'][number];
+/** Scale points and what belongs to them. */
 export type Scale = NonNullable<Setup['scale']>;
+/** A marked feature. */
 export type MarkerSpec = Setup['markers'][number];
+/** A video file of the test. */
 export type ClipSpec = TestFile['clips'][number];
+/** One state of the assembly. */
 export type Configuration = TestFile['configurations'][number];
+/** A stay at one drive frequency. */
 export type DwellSpec = Configuration['dwells'][number];
+/** A clip that holds several dwells. */
 export type SweepSpec = Configuration['sweeps'][number];
+/** A clip of a free decay. */
 export type RingDownSpec = Configuration['ringdowns'][number];
+/** One of EXCITATIONS. */
 export type Excitation = (typeof EXCITATIONS)[number];
+/** Starting knowledge and wishes for the run sheet. */
 export type PlanningSpec = NonNullable<TestFile['plan']>;
