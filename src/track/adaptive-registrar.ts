@@ -9,25 +9,34 @@ import type { Template } from './template.ts';
 /** How a marker may change between frames: only move, or also turn, stretch and shear. */
 export type MotionModel = 'translation' | 'affine';
 
-// A turn by 0.7 degrees costs a 41 px patch of fine texture 0.01 of its score, and some hundredths of a pixel.
-const PROBE_DROP = 0.01;
-// Half of the frames that dropped a little are tried with the affine warp as well: the time is spent only there.
-const PROBE_EVERY = 2;
-// Four more parameters raise the score of pure noise by about a thousandth.
-const LEAST_RISE = 0.005;
-// This many frames that the affine warp recovered settle the matter.
-const RECOVERIES_TO_SWITCH = 3;
+// A soft texture hides a turn from the score: 2 degrees cost it 0.006, and move a 41 px patch by 0.15 px. So every eighth
+// frame is registered with the affine warp as well, and after one that showed a turn the next eight.
+const PROBE_EVERY = 8;
+const ALERT_FRAMES = 8;
+// This many frames that showed a turn settle the matter.
+const TURNS_TO_SWITCH = 3;
+// Deformation that moves the patch's corners by less than this is no more than noise or compression, px.
+const LEAST_CORNER_PX = 0.15;
+// Four more parameters lower the residual a little even without a turn: an F statistic of 1, of 4 once in 300 frames.
+// Compression errors are not white, hence the distance.
+const LEAST_F = 20;
+// Smoothing by [1 2 1] twice over makes this many neighbouring pixels worth one (sum of squared autocorrelations).
+const PIXELS_PER_INDEPENDENT = 3.78;
+// A turn explains all that the translation lacks; a partly covered marker stays below.
+const RECOVERED_WITHIN = 0.02;
 // Below this score a translation has not found the marker, and there is nothing to recover.
 const LEAST_TO_RECOVER = 0.3;
 
 /**
  * Registers by translation as long as that explains the frames, and by an affine warp once it is seen that the part turns:
- * when the score of the translation falls and the affine warp brings it back. Or by the one model it is told.
+ * when the affine warp leaves significantly less residual, deforms the patch visibly, and brings the score to what is
+ * usual. Or by the one model it is told.
  */
 export class AdaptiveRegistrar {
   private current: MotionModel;
-  private recoveries = 0;
-  private dropped = 0;
+  private frames = 0;
+  private alertFrames = 0;
+  private turns = 0;
   private readonly translation: TranslationRegistrar;
   private affine: AffineRegistrar | null = null;
   private used: MotionModel = 'translation';
@@ -74,26 +83,43 @@ export class AdaptiveRegistrar {
   }
 
   private worthProbing(moved: Registration, history: ScoreHistory): boolean {
+    this.frames++;
+    if (this.alertFrames > 0) this.alertFrames--;
     if (!moved.converged || moved.score < LEAST_TO_RECOVER) return false;
-    if (moved.score < history.limit) return true;
-    if (moved.score > history.usual - PROBE_DROP) return false;
-    this.dropped++;
-    return this.dropped % PROBE_EVERY === 0;
+    return moved.score < history.limit || this.alertFrames > 0 || this.frames % PROBE_EVERY === 1;
   }
 
   private probe(image: LumaImage, moved: Registration, history: ScoreHistory): Registration {
-    const turned = this.affineRegistrar().register(image, moved.x, moved.y);
-    const rise = turned.score - moved.score;
-    const recovered =
-      turned.converged &&
-      turned.score >= history.limit &&
-      rise > LEAST_RISE &&
-      rise > 0.5 * (history.usual - moved.score);
-    if (!recovered) return moved;
-    this.recoveries++;
-    if (this.recoveries >= RECOVERIES_TO_SWITCH) this.current = 'affine';
+    const affine = this.affineRegistrar();
+    affine.startFrom(UNDEFORMED);
+    const turned = affine.register(image, moved.x, moved.y);
+    if (!turned.converged || turned.score < history.usual - RECOVERED_WITHIN) return moved;
+    if (this.improvement(moved.score, turned.score) < LEAST_F || this.cornerPx() < LEAST_CORNER_PX)
+      return moved;
+    this.turns++;
+    this.alertFrames = ALERT_FRAMES;
+    if (this.turns >= TURNS_TO_SWITCH) this.current = 'affine';
     this.used = 'affine';
     return turned;
+  }
+
+  /** F statistic of the four parameters that the affine warp has more. */
+  private improvement(movedScore: number, turnedScore: number): number {
+    const { widthPx, heightPx, smoothed } = this.template;
+    const pixels = (widthPx * heightPx) / (smoothed ? PIXELS_PER_INDEPENDENT : 1);
+    const left = Math.max(1e-9, 1 - turnedScore * turnedScore);
+    return ((turnedScore * turnedScore - movedScore * movedScore) / 4) * (pixels / left);
+  }
+
+  /** How far the deformation moves the corners of the patch, px. */
+  private cornerPx(): number {
+    const { xx, xy, yx, yy } = this.affineRegistrar().deformation;
+    const halfX = this.template.widthPx / 2;
+    const halfY = this.template.heightPx / 2;
+    return Math.hypot(
+      halfX * Math.abs(xx) + halfY * Math.abs(xy),
+      halfX * Math.abs(yx) + halfY * Math.abs(yy),
+    );
   }
 
   /** The affine warp did not find its way from the start; from where the translation ended it may. */

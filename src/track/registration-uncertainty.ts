@@ -26,6 +26,10 @@ export interface PositionCovariance {
   readonly yy: number;
 }
 
+// Of a template that is mostly noise nothing can be said; judged spots have a share of 0.5 and more.
+const LEAST_SIGNAL_SHARE = 0.1;
+const PHASES = 32;
+
 /**
  * What noise does to the positions that a registrar finds with one template. It propagates white noise through the
  * smoothing, the steepest-descent images and the Gauss-Newton matrix, less what the template's own noise adds to that
@@ -34,44 +38,57 @@ export interface PositionCovariance {
 export class RegistrationUncertainty {
   /** Covariance of a position for noise of 1 DN at gain 1; null where noise hides the texture along some direction. */
   readonly perUnitNoise: PositionCovariance | null;
-  private readonly patchGainByPhase: Float64Array;
-  private readonly templateGain: number;
+  private readonly noiseGainByPhase: Float64Array;
+  private readonly templateNoiseGain: number;
+  private readonly signalShare: number;
 
   constructor(template: Template, parameters: 2 | 6) {
+    const { smoothed, framesAveraged, noiseDn } = template;
     this.perUnitNoise = covariancePerUnitNoise(template, parameters);
-    const phases = 33;
-    this.patchGainByPhase = new Float64Array(phases);
-    for (let k = 0; k < phases; k++) {
-      this.patchGainByPhase[k] = interpolatedNoiseGain(k / (phases - 1), template.smoothed);
-    }
-    // An averaged template has been sampled at all phases, a cut one at whole pixels.
-    this.templateGain = interpolatedNoiseGain(0, template.smoothed) ** 2 / template.framesAveraged;
+    this.noiseGainByPhase = Float64Array.from({ length: PHASES + 1 }, (_, k) =>
+      interpolatedNoiseGain(k / PHASES, smoothed),
+    );
+    this.templateNoiseGain = interpolatedNoiseGain(0, smoothed) ** 2 / framesAveraged;
+    const noise = noiseDn * noiseDn * this.templateNoiseGain;
+    this.signalShare = Math.max(LEAST_SIGNAL_SHARE, 1 - noise / variance(template.values));
   }
 
   /**
-   * The noise of a frame's pixels before smoothing, DN, from what a registration left over, the template being as
-   * noisy as a frame. Whatever else the frame differs by is taken for noise, which makes uncertainties larger.
+   * The noise of a frame's pixels before smoothing, DN, from what a registration left over, a template of one frame being
+   * as noisy as a frame. Whatever else the frame differs by is taken for noise, which makes uncertainties larger.
    */
   frameNoiseDn(registration: Registration): number {
-    const { residualDn, gain } = registration;
-    const share =
-      this.patchGain(registration.x) * this.patchGain(registration.y) + gain * gain * this.templateGain;
-    return residualDn / Math.sqrt(share);
+    const { x, y, residualDn, gain } = registration;
+    const fromTemplate = gain * this.trueGain(gain) * this.templateNoiseGain;
+    return residualDn / Math.sqrt(this.noiseGainAt(x) * this.noiseGainAt(y) + fromTemplate);
   }
 
   /** Covariance of a registered position from its residual, px squared; null where `perUnitNoise` is. */
   ofRegistration(registration: Registration): PositionCovariance | null {
     const unit = this.perUnitNoise;
     if (!unit || registration.gain <= 0) return null;
-    const factor = (this.frameNoiseDn(registration) / registration.gain) ** 2;
+    const factor = (this.frameNoiseDn(registration) / this.trueGain(registration.gain)) ** 2;
     return { xx: unit.xx * factor, xy: unit.xy * factor, yy: unit.yy * factor };
   }
 
-  private patchGain(position: number): number {
-    const last = this.patchGainByPhase.length - 1;
-    const fraction = position - Math.floor(position);
-    return this.patchGainByPhase[Math.round(fraction * last)]!;
+  /** A regression on a noisy template finds too small a gain, by the template's share of signal. */
+  private trueGain(gain: number): number {
+    return gain / this.signalShare;
   }
+
+  private noiseGainAt(position: number): number {
+    return this.noiseGainByPhase[Math.round((position - Math.floor(position)) * PHASES)]!;
+  }
+}
+
+function variance(values: Float64Array): number {
+  let sum = 0;
+  let squares = 0;
+  for (const value of values) {
+    sum += value;
+    squares += value * value;
+  }
+  return squares / values.length - (sum / values.length) ** 2;
 }
 
 /** What a template's texture can tell, and what noise does to it; both `parameters` * `parameters`. */

@@ -44,7 +44,10 @@ export function makeTexture(
       { length: count },
       () => kind.sigma[0] + random.uniform() * (kind.sigma[1] - kind.sigma[0]),
     ),
-    amplitude: Float64Array.from({ length: count }, () => (random.uniform() < 0.5 ? -1 : 1) * (0.5 + random.uniform())),
+    amplitude: Float64Array.from(
+      { length: count },
+      () => (random.uniform() < 0.5 ? -1 : 1) * (0.5 + random.uniform()),
+    ),
   };
   const size = Math.round(reach);
   const field = drawField(texture, size, size, { x: (size - 1) / 2, y: (size - 1) / 2, mean: 0 });
@@ -100,7 +103,8 @@ function pixelShare(offset: number, sigma: number): number {
 /** Error function within 1.5e-7: Abramowitz and Stegun 7.1.26. */
 function erf(x: number): number {
   const t = 1 / (1 + 0.3275911 * Math.abs(x));
-  const series = t * (0.254829592 + t * (-0.284496736 + t * (1.421413741 + t * (-1.453152027 + t * 1.061405429))));
+  const series =
+    t * (0.254829592 + t * (-0.284496736 + t * (1.421413741 + t * (-1.453152027 + t * 1.061405429))));
   const value = 1 - series * Math.exp(-x * x);
   return x < 0 ? -value : value;
 }
