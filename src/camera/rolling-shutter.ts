@@ -47,6 +47,9 @@ export function readoutDirection(rotationDeg: DisplayRotationDeg): readonly [num
   }
 }
 
+/** A frame is read before the next begins; doubled or uneven stamps leave the mean interval this uncertain. */
+const LONGEST_READOUT = 1.5;
+
 /**
  * True time of every sample of one marker: frame time + readout * (row + 0.5) / rows, with the row where the
  * marker itself was in that frame. This undoes the shutter for a moving marker too: the fundamental comes
@@ -57,7 +60,7 @@ export function readoutDirection(rotationDeg: DisplayRotationDeg): readonly [num
  * @param xPx yPx the marker as displayed, px, before any correction; NaN where lost
  * @returns one time per frame, strictly increasing; in a gap the row is interpolated in time between the
  *   frames around it (held at the ends), so that the clock has no holes
- * @throws InputError for a readout below 0 or longer than the shortest frame interval
+ * @throws InputError for a readout below 0, or one too long for frames this close together
  */
 export function rowTimes(
   frameTimesS: Float64Array,
@@ -67,24 +70,27 @@ export function rowTimes(
 ): Float64Array {
   const n = frameTimesS.length;
   if (xPx.length !== n || yPx.length !== n) throw new Error('one position per frame');
-  requireReadout(readout.rowReadoutS);
+  requireReadout(readout.rowReadoutS, frameTimesS);
   const fraction = Float64Array.from(xPx, (x, i) => readoutFraction(readout, x, yPx[i]!));
   fillGaps(fraction, frameTimesS);
   const times = frameTimesS.map((t, i) => t + readout.rowReadoutS * fraction[i]!);
-  for (let i = 1; i < n; i++) {
-    if (!(times[i]! > times[i - 1]!)) {
-      throw new InputError(
-        `A row readout of ${readout.rowReadoutS} s is longer than the frames are apart; correct rowReadout (usually 0.005 to 0.03 s).`,
-      );
-    }
-  }
+  for (let i = 1; i < n; i++) if (!(times[i]! > times[i - 1]!)) throw tooLong(readout.rowReadoutS);
   return times;
 }
 
-function requireReadout(rowReadoutS: number): void {
+function requireReadout(rowReadoutS: number, frameTimesS: Float64Array): void {
   if (!(rowReadoutS >= 0) || !Number.isFinite(rowReadoutS)) {
     throw new InputError(`rowReadout is ${rowReadoutS} s; give 0 or more, or leave it out.`);
   }
+  const n = frameTimesS.length;
+  const meanIntervalS = n > 1 ? (frameTimesS[n - 1]! - frameTimesS[0]!) / (n - 1) : Number.POSITIVE_INFINITY;
+  if (rowReadoutS > LONGEST_READOUT * meanIntervalS) throw tooLong(rowReadoutS);
+}
+
+function tooLong(rowReadoutS: number): InputError {
+  return new InputError(
+    `A row readout of ${rowReadoutS} s is longer than the frames are apart; correct rowReadout (usually 0.005 to 0.03 s).`,
+  );
 }
 
 /** Linear in time between seen neighbours, held at the ends, the middle of the frame where nothing was seen. */

@@ -177,5 +177,7 @@ describe('row times of a real track', () => {
     const y = Float64Array.of(1000, 10);
     const t = Float64Array.of(0, 0.01);
     expect(() => rowTimes(t, y, y, readout)).toThrow(/longer than the frames are apart/);
+    const still = Float64Array.of(500, 500);
+    expect(() => rowTimes(t, still, still, { ...readout, rowReadoutS: 0.02 })).toThrow(InputError);
   });
 });
