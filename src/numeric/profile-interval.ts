@@ -8,10 +8,16 @@ export interface ProfileInterval {
 }
 
 // Where the sum has risen to this share of what is asked, the bound is known well enough.
-const RISE_ACCURACY = 1e-4;
+const RISE_ACCURACY = 1e-3;
 const EXPANSIONS = 12;
-const REFINEMENTS = 40;
-const QUICK = { gradientTolerance: 1e-9, reductionTolerance: 1e-11, stepTolerance: 1e-9, polish: false };
+const REFINEMENTS = 12;
+const QUICK = {
+  gradientTolerance: 1e-9,
+  reductionTolerance: 1e-11,
+  stepTolerance: 1e-9,
+  maxEvaluations: 40,
+  polish: false,
+};
 
 /**
  * Profile-likelihood interval: the values of one parameter for which the sum of squares, minimised over all
@@ -20,6 +26,7 @@ const QUICK = { gradientTolerance: 1e-9, reductionTolerance: 1e-11, stepToleranc
  * @param solution a converged solution of `problem`
  * @param index which parameter
  * @param rise positive; k^2 times the variance factor, with k the coverage factor wanted
+ * @param floor least value that means anything; a side that would go lower ends there
  * @throws Error where the solution has no covariance
  * Source: Bates and Watts, Nonlinear Regression Analysis, section 6.1 (from memory).
  */
@@ -28,13 +35,14 @@ export function profileInterval(
   solution: LeastSquaresSolution,
   index: number,
   rise: number,
+  floor = Number.NEGATIVE_INFINITY,
 ): ProfileInterval {
   if (solution.unscaledCovariance === null || solution.residualSumOfSquares === null) {
     throw new Error('a profile needs a converged solution');
   }
   return {
-    lower: findBound(problem, solution, index, rise, -1),
-    upper: findBound(problem, solution, index, rise, 1),
+    lower: findBound(problem, solution, index, rise, -1, solution.parameters[index]! - floor),
+    upper: findBound(problem, solution, index, rise, 1, Number.POSITIVE_INFINITY),
   };
 }
 
@@ -45,6 +53,7 @@ function findBound(
   index: number,
   rise: number,
   side: 1 | -1,
+  limit: number,
 ): number | null {
   const n = problem.parameterCount;
   const centre = solution.parameters[index]!;
@@ -69,16 +78,17 @@ function findBound(
 
   let inside = 0;
   let insideExcess = -target;
-  let outside = reach;
+  let outside = Math.min(reach, limit);
   let outsideExcess = excess(outside);
   for (let k = 0; outsideExcess === null || outsideExcess < 0; k++) {
+    if (outside === limit && outsideExcess !== null) return centre + side * limit;
     if (k === EXPANSIONS) return null;
     if (outsideExcess === null) {
       outside = (inside + outside) / 2;
     } else {
       inside = outside;
       insideExcess = outsideExcess;
-      outside *= 1.5;
+      outside = Math.min(1.5 * outside, limit);
     }
     outsideExcess = excess(outside);
   }

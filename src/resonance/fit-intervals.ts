@@ -23,17 +23,17 @@ export function fitIntervals(
   const unscaled = solution.unscaledCovariance;
   if (covariance === null || unscaled === null) return NO_INTERVALS;
   const problem = fitProblem(layout, observations, rowWeights?.map(Math.sqrt) ?? null);
-  const at = (j: number): ProfileInterval => {
+  const at = (j: number, floor?: number): ProfileInterval => {
     const diagonal = j * layout.names.length + j;
-    return profileInterval(problem, solution, j, (k * k * covariance[diagonal]!) / unscaled[diagonal]!);
+    const rise = (k * k * covariance[diagonal]!) / unscaled[diagonal]!;
+    return profileInterval(problem, solution, j, rise, floor);
   };
-  const damping = at(layout.damping);
   return {
     staticGain:
       layout.gain < 0 ? null : widened(at(layout.gain), solution.parameters[layout.gain]!, k * commonU),
     naturalHz: at(layout.naturalHz),
-    // the amplitude curve is the same for a negative damping, which means nothing
-    damping: { lower: damping.lower === null ? null : Math.max(0, damping.lower), upper: damping.upper },
+    // a negative damping means nothing, though the amplitude curve would be the same
+    damping: at(layout.damping, 0),
   };
 }
 

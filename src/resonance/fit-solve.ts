@@ -6,6 +6,9 @@ import type { ParameterLayout } from './parameter-layout.ts';
 import { evaluateStart, type GridStart, startsFromGrid } from './start-grid.ts';
 import { startFromAmplitudes, startFromLags } from './start-quadratic.ts';
 
+// From start values this good a fit that has a minimum needs some ten steps.
+const MAX_EVALUATIONS = 200;
+
 /** A solved fit with the layout it was solved in (its fixed gain may have turned to -1). */
 export interface SolvedFit {
   readonly layout: ParameterLayout;
@@ -52,7 +55,8 @@ export function solveFrom(
   start: Float64Array,
   rowScale: Float64Array | null = null,
 ): SolvedFit {
-  return { layout, solution: solveLeastSquares(fitProblem(layout, observations, rowScale), start) };
+  const problem = fitProblem(layout, observations, rowScale);
+  return { layout, solution: solveLeastSquares(problem, start, { maxEvaluations: MAX_EVALUATIONS }) };
 }
 
 function startParameters(layout: ParameterLayout, start: GridStart): Float64Array {

@@ -9,8 +9,9 @@ import { distinctFrequencies } from './sufficient-data.ts';
 const BRACKET = 2;
 // A natural frequency known no better than this is not known.
 const LARGEST_RELATIVE_U = 0.2;
-// Less than any real part has; the solver's way of saying zero.
-const NO_DAMPING = 1e-5;
+// A damping this small against the distance of the nearest dwell from the peak (relative) changes no amplitude
+// by more than a few parts in ten thousand: the solver's way of saying zero.
+const NO_DAMPING = 0.01;
 
 /**
  * What is missing for the outcome of a fit to be used, as one sentence that says what to run; null where nothing
@@ -31,7 +32,7 @@ export function missingAfterFit(
   if (fit === null || !fit.solution.converged) {
     return (
       oneFlank(observations) ??
-      noDamping(fit, first, last) ??
+      noDamping(fit, observations.driveHz) ??
       `No resonance of this model can be found in the dwells ${range}. Add dwells on both sides of the peak, or check the excitation chosen.`
     );
   }
@@ -64,11 +65,13 @@ export function missingAfterFit(
 }
 
 /** A fit that ran to no damping at all has a place for the peak but no dwell close enough to see its height. */
-function noDamping(fit: SolvedFit | null, first: number, last: number): string | null {
+function noDamping(fit: SolvedFit | null, driveHz: Float64Array): string | null {
   if (fit === null) return null;
   const naturalHz = fit.solution.parameters[fit.layout.naturalHz]!;
-  const damping = fit.solution.parameters[fit.layout.damping]!;
-  if (!(Math.abs(damping) < NO_DAMPING && naturalHz > first && naturalHz < last)) return null;
+  const damping = Math.abs(fit.solution.parameters[fit.layout.damping]!);
+  const nearest = Math.min(...driveHz.map((f) => Math.abs(f / naturalHz - 1)));
+  const inside = naturalHz > Math.min(...driveHz) && naturalHz < Math.max(...driveHz);
+  if (!inside || damping > NO_DAMPING * nearest) return null;
   return `The dwells do not come close enough to the peak, near ${plainNumber(naturalHz, 4)} Hz, to show any damping. Add dwells nearer to it.`;
 }
 
