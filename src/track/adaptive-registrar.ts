@@ -10,9 +10,10 @@ import type { Template } from './template.ts';
 export type MotionModel = 'translation' | 'affine';
 
 // A soft texture hides a turn from the score: 2 degrees cost it 0.006, and move a 41 px patch by 0.15 px. So every eighth
-// frame is registered with the affine warp as well, and after one that showed a turn the next eight.
+// frame is registered with the affine warp as well, at the start and after one that showed a turn every frame.
 const PROBE_EVERY = 8;
 const ALERT_FRAMES = 8;
+const ALERT_AT_START = 24;
 // This many frames that showed a turn settle the matter.
 const TURNS_TO_SWITCH = 3;
 // Deformation that moves the patch's corners by less than this is no more than noise or compression, px.
@@ -35,7 +36,7 @@ const LEAST_TO_RECOVER = 0.3;
 export class AdaptiveRegistrar {
   private current: MotionModel;
   private frames = 0;
-  private alertFrames = 0;
+  private alertFrames = ALERT_AT_START;
   private turns = 0;
   private readonly translation: TranslationRegistrar;
   private affine: AffineRegistrar | null = null;

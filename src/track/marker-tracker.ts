@@ -160,7 +160,9 @@ export class MarkerTracker {
       return null;
     }
 
-    const elsewhere = expected !== null && !travelled.allows(fit.x, fit.y, this.patchPx / 2);
+    // A moving part is easily a patch further on; after a loss a look-alike is likelier than that.
+    const slackPx = this.lostFrames > 0 ? this.patchPx / 2 : this.patchPx;
+    const elsewhere = expected !== null && !travelled.allows(fit.x, fit.y, slackPx);
     if (elsewhere && fit.score < history.limit) {
       this.refuse('covered', fit.score);
       return null;

@@ -4,10 +4,12 @@ const MEMORY = 61;
 const LEAST = 8;
 // 15 % of the patch covered costs 0.03 of the score and 0.05 px; undisturbed scores stay within 0.005.
 const LEAST_DROP = 0.03;
-// Scores of noisy or blurred frames spread more widely; 4 standard deviations pass by chance once in 30 000.
+// Scores of noisy or blurred frames spread more widely; 4 standard deviations pass by chance once in 30 000. The spread is
+// taken above the median, where frames with a covered marker do not reach, and only so much of it is allowed.
 const SPREADS = 4;
+const LARGEST_DROP = 0.1;
 // However slowly a marker is covered, the reference does not follow further down than this.
-const FARTHEST_FALL = 0.05;
+const FARTHEST_FALL = 0.03;
 // Before there is a history, the score may fall this far below what the template's noise alone explains.
 const FIRST_DROP = 0.1;
 
@@ -36,8 +38,9 @@ export class ScoreHistory {
   get limit(): number {
     const { LOST_BELOW } = ScoreHistory;
     if (this.sorted.length < LEAST) return Math.max(LOST_BELOW, this.expected - FIRST_DROP);
-    const spread = this.quantile(0.5) - this.quantile(0.16);
-    return Math.max(LOST_BELOW, this.usual - Math.max(LEAST_DROP, SPREADS * spread));
+    const spread = this.quantile(0.84) - this.quantile(0.5);
+    const drop = Math.min(LARGEST_DROP, Math.max(LEAST_DROP, SPREADS * spread));
+    return Math.max(LOST_BELOW, this.usual - drop);
   }
 
   /** Remembers a score. One below the limit counts as the limit, so that a cover does not become the usual. */
