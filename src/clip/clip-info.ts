@@ -78,6 +78,8 @@ export interface ClipInfo {
   readonly ticks: Float64Array;
   /** 1 for each frame that decodes without any other frame. Length = frameCount. */
   readonly keyFrames: Uint8Array;
+  /** Most frames that are shown before, yet decoded after, one that they may be built on; 0 without B-frames. */
+  readonly reorderDepth: number;
   /** One tick of the file's clock, s, as the fraction [numerator, denominator]. */
   readonly timeBase: readonly [number, number];
   /** Timestamp of the first displayed frame in the file, ticks. */

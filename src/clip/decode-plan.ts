@@ -55,6 +55,8 @@ export interface PassParts {
   readonly onlyKeyFrames: boolean;
   /** Start reading near the first frame of the range rather than at the beginning of the file. */
   readonly seek: boolean;
+  /** Leave out pictures in which the decoder met an error, instead of patching them up from their neighbours. */
+  readonly strict: boolean;
 }
 
 /** The pass that decodes a range of frames, unturned, to a NUT stream that carries their exact timestamps. */
@@ -71,6 +73,7 @@ export function decodingPass(
       '-noautorotate',
       '-copyts',
       ...['-threads', '2'],
+      ...(parts.strict ? ['-err_detect:v', 'explode'] : []),
       ...(parts.onlyKeyFrames ? ['-skip_frame', 'nokey'] : []),
       ...(parts.seek ? seekOptions(clip, range.first) : []),
     ],

@@ -5,6 +5,7 @@ import { clipName, endedBadly } from './clip-messages.ts';
 import { stackedLumaFilters } from './decode-filters.ts';
 import { clipTicks, decodingPass, type FrameRange, frameRange } from './decode-plan.ts';
 import type { DecodeOptions, DecodeResult, OnFrame } from './decoded-frame.ts';
+import { doubtfulFrames } from './doubtful-frames.ts';
 import { ffmpegArguments } from './ffmpeg-arguments.ts';
 import { type Ffmpeg, findFfmpeg } from './find-ffmpeg.ts';
 import { FrameMatcher } from './frame-matcher.ts';
@@ -33,11 +34,11 @@ export async function decodeRegions(
   }
   const range = frameRange(clip, options.fromS, options.maxFrames);
   const ffmpeg = options.ffmpeg ?? (await findFfmpeg());
-  const sought = await onePass(clip, fitted, range, onFrame, options, ffmpeg, range.first > 0);
-  if (sought !== 'landed too late') return sought;
-  const fromStart = await onePass(clip, fitted, range, onFrame, options, ffmpeg, false);
-  if (fromStart === 'landed too late') throw new Error('A pass from the beginning cannot land too late.');
-  return fromStart;
+  for (const attempt of attempts(range)) {
+    const result = await onePass({ clip, regions: fitted, range, onFrame, options, ffmpeg }, attempt);
+    if (result !== 'begins too late') return result;
+  }
+  throw new Error('The last attempt takes what it gets.');
 }
 
 /** `decodeRegions` for one region that is the whole stored picture, odd sizes included. */
@@ -50,58 +51,79 @@ export function decodeWholeFrames(
   return decodeRegions(clip, [whole], onFrame, options);
 }
 
-async function onePass(
-  clip: ClipInfo,
-  regions: readonly Region[],
-  range: FrameRange,
-  onFrame: OnFrame,
-  options: DecodeOptions,
-  ffmpeg: Ffmpeg,
-  seek: boolean,
-): Promise<DecodeResult | 'landed too late'> {
+/** One way to go about a pass. A pass that does not begin with the frame expected may be given up for the next. */
+interface Attempt {
+  readonly seek: boolean;
+  readonly strict: boolean;
+  readonly isLast: boolean;
+}
+
+/**
+ * Seeking may land behind the frame wanted: then read from the beginning. A strict decoder may refuse every picture
+ * for a harmless peculiarity of a camera, the first one too: then take pictures as they come.
+ */
+function attempts(range: FrameRange): Attempt[] {
+  const sought = range.first > 0 ? [{ seek: true, strict: true, isLast: false }] : [];
+  return [
+    ...sought,
+    { seek: false, strict: true, isLast: false },
+    { seek: false, strict: false, isLast: true },
+  ];
+}
+
+/** What stays the same over the attempts. */
+interface Job {
+  readonly clip: ClipInfo;
+  readonly regions: readonly Region[];
+  readonly range: FrameRange;
+  readonly onFrame: OnFrame;
+  readonly options: DecodeOptions;
+  readonly ffmpeg: Ffmpeg;
+}
+
+async function onePass(job: Job, attempt: Attempt): Promise<DecodeResult | 'begins too late'> {
+  const { clip, regions, range, onFrame, options, ffmpeg } = job;
   const onlyKeyFrames = options.onlyKeyFrames ?? false;
   const matcher = new FrameMatcher(clip, range.first, onlyKeyFrames);
   const unstack = frameUnstacker(clip, regions);
   let delivered = 0;
   let enough = false;
-  let landedLate = false;
+  let tooLate = false;
   const reader = new NutReader(({ pts, timeBase, payload }) => {
-    if (enough || landedLate) return;
+    if (enough || tooLate) return;
     const index = matcher.match(clipTicks(pts, timeBase, clip));
     if (index === null || index >= range.end) return;
-    landedLate = seek && delivered === 0 && matcher.lost.length > 0;
-    if (landedLate) return;
-    const frame = {
-      index,
-      timeS: clip.timesS[index] ?? 0,
-      doubtful: matcher.afterDamage,
-      regions: unstack(payload),
-    };
+    tooLate = !attempt.isLast && delivered === 0 && matcher.lost.length > 0;
+    if (tooLate) return;
+    const images = unstack(payload);
     delivered++;
+    const frame = { index, timeS: clip.timesS[index] ?? 0, doubtful: matcher.afterDamage, regions: images };
     enough = onFrame(frame) === false;
   });
 
   const parts = {
     filters: stackedLumaFilters(clip, regions),
     encoder: ['-c:v', 'rawvideo'],
-    onlyKeyFrames,
-    seek,
+    ...{ onlyKeyFrames, seek: attempt.seek, strict: attempt.strict },
   };
   const result = await runFfmpeg(ffmpeg.path, ffmpegArguments(decodingPass(clip, ffmpeg, range, parts)), {
     ...(options.signal ? { signal: options.signal } : {}),
     ...(options.stallS ? { stallS: options.stallS } : {}),
     onOutput: (chunk) => {
       reader.push(chunk);
-      return !(enough || landedLate);
+      return !(enough || tooLate);
     },
   });
-  if (landedLate) return 'landed too late';
   if (result.reason === 'cancelled') throw new CancelledError();
-  if (!enough) {
-    matcher.finish(range.end);
-    refuseBadEnd(clip, result, delivered, range);
-  }
-  return { delivered, lostFrames: matcher.lost, regions, complaints: complaintsOf(result, matcher.unlisted) };
+  const gaveNothing = delivered === 0 && range.end > range.first && !enough;
+  const endedItself = result.reason === 'finished' || result.reason === 'failed';
+  if (tooLate || (gaveNothing && endedItself && !attempt.isLast)) return 'begins too late';
+  if (gaveNothing || !(enough || endedItself)) throw new InputError(endedBadly(clip.path, result, delivered));
+  if (!enough) matcher.finish(range.end);
+  return {
+    ...{ delivered, lostFrames: matcher.lost, doubtfulFrames: doubtfulFrames(clip, matcher.lost), regions },
+    complaints: complaintsOf(result, matcher.unlisted, reader.midPacket && !enough),
+  };
 }
 
 /** Lays images over the stacked picture, without copying; the same images are handed out each time. */
@@ -130,16 +152,11 @@ function frameUnstacker(
   };
 }
 
-/** Only a pass that gave nothing, or did not end by itself, is a failure; damage within is counted, not refused. */
-function refuseBadEnd(clip: ClipInfo, result: FfmpegResult, delivered: number, range: FrameRange): void {
-  const nothing = delivered === 0 && range.end > range.first;
-  const endedItself = result.reason === 'finished' || result.reason === 'failed';
-  if (nothing || !endedItself) throw new InputError(endedBadly(clip.path, result, delivered));
-}
-
-function complaintsOf(result: FfmpegResult, unlisted: number): string[] {
+function complaintsOf(result: FfmpegResult, unlisted: number, cutShort: boolean): string[] {
   const complaints = [...result.lastLines];
+  if (result.reason === 'failed') complaints.push(`ffmpeg ended with status ${result.exitCode}.`);
   if (unlisted > 0)
     complaints.push(`${unlisted} decoded frames carry a timestamp the container does not list.`);
+  if (cutShort) complaints.push('The decoded pictures end in the middle of one.');
   return complaints;
 }

@@ -9,8 +9,8 @@ export interface DecodedFrame {
   /** Time of the frame, s of file time from the clip's first frame; equals `ClipInfo.timesS[index]`. */
   readonly timeS: number;
   /**
-   * True from a damaged place in the file up to the next key frame: the picture may be built on lost data, and
-   * what is seen in it must not be trusted without a check of its own.
+   * True from a lost frame up to the next key frame: the picture may be built on lost data. Frames handed over
+   * before the loss showed can be affected too: `DecodeResult.doubtfulFrames` has them all.
    */
   readonly doubtful: boolean;
   /** Brightness of each region, in the order the regions were asked for. */
@@ -42,6 +42,12 @@ export interface DecodeResult {
   readonly delivered: number;
   /** Indices of frames that the clip holds within the range asked for but that did not decode. */
   readonly lostFrames: readonly number[];
+  /**
+   * Indices of frames that were handed over but may be built on lost ones: from shortly before each lost frame to
+   * the next key frame. What was seen in them is not to be trusted. Damage that the decoder does not notice
+   * (H.265 and VP9 data carry nothing to notice it by) is not in this list.
+   */
+  readonly doubtfulFrames: readonly number[];
   /** The rectangles really decoded (see `fitRegion`), in the order asked for. */
   readonly regions: readonly Region[];
   /** What the decoder complained about, last lines only, one sentence each. */

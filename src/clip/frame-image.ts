@@ -113,6 +113,7 @@ async function picture(
     filters: displayFilters(clip, options, isPng),
     encoder: [...encoder, '-frames:v', '1'],
     onlyKeyFrames: false,
+    strict: false, // to look at, a patched picture is better than none
     seek,
   };
   const range = { first: index, end: clip.frameCount };

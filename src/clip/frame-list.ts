@@ -25,6 +25,8 @@ export interface FrameList {
   readonly pts: Float64Array;
   /** 1 for frames that decode without any other. Same length. */
   readonly keyFrames: Uint8Array;
+  /** Most frames shown before, yet decoded after, one frame. */
+  readonly reorderDepth: number;
   /** One tick, s, as [numerator, denominator]. */
   readonly timeBase: readonly [number, number];
 }
@@ -127,7 +129,12 @@ function displayedFrames({ frames, timeBase }: RawList): { list: FrameList | nul
   const decodable = frames.slice(firstKey); // what comes before the first key frame is dropped by decoders
   const shown = decodable.filter((frame) => !frame.isDiscarded && frame.pts !== null);
   if (shown.length === 0) return { list: null, certain: false };
+  const decodingOrder = new Map(shown.map((frame, i) => [frame, i]));
   shown.sort((a, b) => (a.pts ?? 0) - (b.pts ?? 0));
+  const reorderDepth = shown.reduce(
+    (most, frame, i) => Math.max(most, i - (decodingOrder.get(frame) ?? i)),
+    0,
+  );
   const keyPts = decodable[0]?.pts ?? 0;
   const untimed = decodable.some((frame) => frame.pts === null);
   const leading = shown.some((frame) => (frame.pts ?? 0) < keyPts); // may refer to pictures before the beginning
@@ -135,6 +142,7 @@ function displayedFrames({ frames, timeBase }: RawList): { list: FrameList | nul
     list: {
       pts: Float64Array.from(shown, (frame) => frame.pts ?? 0),
       keyFrames: Uint8Array.from(shown, (frame) => (frame.isKey ? 1 : 0)),
+      reorderDepth,
       timeBase,
     },
     certain: !untimed && !leading,

@@ -1,7 +1,8 @@
 import type { ClipInfo } from './clip-info.ts';
+import { endsDoubt } from './doubtful-frames.ts';
 
 /** What of a clip the decoded frames are matched with. */
-export type FrameTable = Pick<ClipInfo, 'ticks' | 'keyFrames' | 'frameCount'>;
+export type FrameTable = Pick<ClipInfo, 'ticks' | 'keyFrames' | 'frameCount' | 'reorderDepth'>;
 
 /**
  * Finds the index of each decoded frame by its timestamp, in the table of frames the container lists, and keeps
@@ -13,7 +14,7 @@ export class FrameMatcher {
   readonly #lost: number[] = [];
   #next: number;
   #unlisted = 0;
-  #damaged = false;
+  #afterLoss: number | null = null;
 
   /** Expects frames from index `first` on, or only the key frames among them. */
   constructor(table: FrameTable, first: number, onlyKeyFrames: boolean) {
@@ -55,13 +56,14 @@ export class FrameMatcher {
       if (earlier) this.#unlisted++;
       return null;
     }
-    if (this.#table.keyFrames[this.#next] === 1) this.#damaged = false;
+    if (this.#afterLoss !== null && endsDoubt(this.#table, this.#next, this.#afterLoss))
+      this.#afterLoss = null;
     return this.#next++;
   }
 
-  /** True from a lost frame up to the next key frame: what is decoded there may build on what was lost. */
+  /** True from a lost frame up to the next sound key frame: what is decoded there may build on what was lost. */
   get afterDamage(): boolean {
-    return this.#damaged;
+    return this.#afterLoss !== null;
   }
 
   /** Counts as lost what is still missing below the index `end`. */
@@ -73,7 +75,7 @@ export class FrameMatcher {
     const isExpected = !this.#onlyKeyFrames || this.#table.keyFrames[this.#next] === 1;
     if (isExpected) {
       this.#lost.push(this.#next);
-      this.#damaged = true;
+      this.#afterLoss = this.#next;
     }
     this.#next++;
   }

@@ -83,7 +83,8 @@ export async function probeClip(path: string, options: ProbeOptions = {}): Promi
     nominalFps,
     measuredFps: timing.medianIntervalS === null ? null : 1 / timing.medianIntervalS,
     frameCount: timesS.length,
-    ...{ timesS, ticks, keyFrames: list.keyFrames, timeBase: list.timeBase, originTicks },
+    ...{ timesS, ticks, keyFrames: list.keyFrames, reorderDepth: list.reorderDepth },
+    ...{ timeBase: list.timeBase, originTicks },
     durationS: (timesS.at(-1) ?? 0) + (timing.medianIntervalS ?? 0),
     ...{ gaps: timing.gaps, duplicates: timing.duplicates, regularity: timing.regularity },
     captureFps: positive(listing.tags.get(CAPTURE_RATE_TAG)),
@@ -145,7 +146,8 @@ async function framesOf(
   const decoded = await listDecodedFrames(clip, ffmpeg, packets.timeBase, run);
   if (decoded.result.reason === 'cancelled') throw new CancelledError();
   if (decoded.list === null) throw new InputError(endedBadly(clip.path, decoded.result, 0));
-  return { ...decoded.list, keyFrames: keysByTime(decoded.list, packets.list) };
+  const reorderDepth = packets.list?.reorderDepth ?? 0;
+  return { ...decoded.list, keyFrames: keysByTime(decoded.list, packets.list), reorderDepth };
 }
 
 /** Key frames of decoded frames: those at whose time a key packet stands; at least the first. */
