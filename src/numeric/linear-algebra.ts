@@ -1,4 +1,5 @@
-import { CholeskyDecomposition, EigenvalueDecomposition, Matrix, QrDecomposition, SVD } from 'ml-matrix';
+import { CholeskyDecomposition, EigenvalueDecomposition, Matrix, SVD } from 'ml-matrix';
+import { backSubstitute, reduceToTriangle } from './householder.ts';
 
 /**
  * Outcome of a linear least-squares fit.
@@ -63,16 +64,13 @@ function columnNorms(design: Float64Array, rows: number, columns: number): Float
 }
 
 /** Inverse of an upper triangular matrix, row-major n x n; pivots must not be zero. */
-function invertUpperTriangle(upper: Matrix): Float64Array {
-  const n = upper.rows;
+function invertUpperTriangle(upper: Float64Array, n: number): Float64Array {
   const inverse = new Float64Array(n * n);
   for (let column = 0; column < n; column++) {
-    inverse[column * n + column] = 1 / upper.get(column, column);
-    for (let row = column - 1; row >= 0; row--) {
-      let sum = 0;
-      for (let k = row + 1; k <= column; k++) sum += upper.get(row, k) * inverse[k * n + column]!;
-      inverse[row * n + column] = -sum / upper.get(row, row);
-    }
+    const unit = new Float64Array(n);
+    unit[column] = 1;
+    const solution = backSubstitute(upper, n, unit);
+    for (let row = 0; row <= column; row++) inverse[row * n + column] = solution[row]!;
   }
   return inverse;
 }
@@ -94,25 +92,24 @@ export function linearLeastSquares(
   target: Float64Array,
 ): LinearFit | null {
   if (target.length !== rows) throw new Error(`target of ${target.length} values for ${rows} rows`);
-  const scaled = toMatrix(design, rows, columns);
+  if (design.length !== rows * columns) {
+    throw new Error(`design of ${design.length} values for ${rows} x ${columns}`);
+  }
   if (rows < columns || columns === 0) return null;
   const norms = columnNorms(design, rows, columns);
   if (!norms.every((norm) => norm > 0 && Number.isFinite(norm))) return null;
 
+  const byColumn = new Float64Array(rows * columns);
   for (let row = 0; row < rows; row++) {
     for (let column = 0; column < columns; column++) {
-      scaled.set(row, column, design[row * columns + column]! / norms[column]!);
+      byColumn[column * rows + row] = design[row * columns + column]! / norms[column]!;
     }
   }
-  const qr = new QrDecomposition(scaled);
-  const upper = qr.upperTriangularMatrix;
+  const { upper, rotated } = reduceToTriangle(byColumn, rows, columns, target.slice());
   for (let k = 0; k < columns; k++) {
-    if (!(Math.abs(upper.get(k, k)) > SMALLEST_PIVOT)) return null;
+    if (!(Math.abs(upper[k * columns + k]!) > SMALLEST_PIVOT)) return null;
   }
-
-  const solution = qr.solve(Matrix.from1DArray(rows, 1, target));
-  const coefficients = new Float64Array(columns);
-  for (let k = 0; k < columns; k++) coefficients[k] = solution.get(k, 0) / norms[k]!;
+  const coefficients = backSubstitute(upper, columns, rotated).map((value, k) => value / norms[k]!);
   if (!coefficients.every(Number.isFinite)) return null;
 
   const residuals = new Float64Array(rows);
@@ -125,7 +122,7 @@ export function linearLeastSquares(
   }
 
   // (D'D)^-1 = R^-1 R^-T, undoing the column scale
-  const inverse = invertUpperTriangle(upper);
+  const inverse = invertUpperTriangle(upper, columns);
   const unscaledCovariance = new Float64Array(columns * columns);
   for (let a = 0; a < columns; a++) {
     for (let b = a; b < columns; b++) {

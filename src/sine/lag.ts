@@ -1,6 +1,6 @@
 import { type Phasor, relativeNoise } from './residual-spectrum.ts';
 import { presentSamples } from './samples.ts';
-import { phaseAtZeroRad, type SineFit } from './sine-fit.ts';
+import type { SineFit } from './sine-fit.ts';
 import { fitSineAtFrequency, type SineFitOptions } from './three-parameter.ts';
 
 /** The response relative to the drive at one frequency. */
@@ -28,8 +28,10 @@ export function lagDegrees(drivePhaseRad: number, responsePhaseRad: number): num
 }
 
 function asPhasor(fit: SineFit): { residuals: Float64Array; phasor: Phasor } {
-  const phase = phaseAtZeroRad(fit);
-  const phasor = { real: fit.amplitude * Math.cos(phase), imaginary: fit.amplitude * Math.sin(phase) };
+  const phasor = {
+    real: fit.amplitude * Math.cos(fit.phaseRad),
+    imaginary: fit.amplitude * Math.sin(fit.phaseRad),
+  };
   return { residuals: fit.residuals, phasor };
 }
 

@@ -20,6 +20,7 @@ export function presentSamples(
 ): Samples {
   if (timesS.length !== values.length) throw new Error(`${timesS.length} times for ${values.length} values`);
   const [fromS, toS] = window ?? [Number.NEGATIVE_INFINITY, Number.POSITIVE_INFINITY];
+  if (window === undefined && values.every(Number.isFinite)) return { timesS, values };
   const keep: number[] = [];
   for (let i = 0; i < timesS.length; i++) {
     const time = timesS[i]!;

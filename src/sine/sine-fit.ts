@@ -1,5 +1,6 @@
 import { linearLeastSquares } from '../numeric/linear-algebra.ts';
-import { type FittedDesign, localNoise } from './residual-spectrum.ts';
+import type { FittedDesign } from './ordinates.ts';
+import { localNoise } from './residual-spectrum.ts';
 import type { Samples } from './samples.ts';
 import { columnCount, type SineModel, sineDesign } from './sine-model.ts';
 import { scaledCovariance } from './sine-uncertainty.ts';

@@ -56,7 +56,7 @@ describe('linear least squares', () => {
 
   test('a design that does not fit its stated shape is refused', () => {
     expect(() => linearLeastSquares(Float64Array.of(1, 2, 3), 2, 2, Float64Array.of(1, 2))).toThrow(
-      /matrix of 2 x 2/,
+      /design of 3 values for 2 x 2/,
     );
     expect(() => linearLeastSquares(Float64Array.of(1, 2), 2, 1, Float64Array.of(1))).toThrow(/target/);
   });
