@@ -1,11 +1,9 @@
-import type { RelativeLine } from '../camera/correct-dwell.ts';
 import { InputError } from '../errors.ts';
 import type { PixelsToMm } from '../scale/displacement.ts';
 import { axisFromPoints, type MotionAxis } from '../scale/motion-axis.ts';
-import { parallaxFromDistances } from '../scale/parallax.ts';
+import { type Parallax, parallaxFromDistances } from '../scale/parallax.ts';
 import { planeMapping, planePointMm } from '../scale/perspective.ts';
 import { DEFAULT_CLICK_U_PX, scaleFromPoints, scaleInMotionPlane } from '../scale/scale.ts';
-import { DEFAULT_TILT_U_DEG, unknownTiltRelU } from '../scale/tilt.ts';
 import type { Scale as ScaleSpec, Setup } from '../testfile/schema.ts';
 
 /** How a camera setup turns pixels into millimetres, and what that leaves uncertain in every amplitude alike. */
@@ -13,7 +11,8 @@ export interface SetupGeometry {
   readonly toMm: PixelsToMm;
   /** The motion axis where the user marked it; null where it is to be found from the motion. */
   readonly givenAxis: MotionAxis | null;
-  readonly lines: readonly RelativeLine[];
+  /** null where the distances were not given. */
+  readonly parallax: Parallax | null;
   readonly warnings: readonly string[];
 }
 
@@ -35,18 +34,6 @@ function uniform(setup: Setup, spec: ScaleSpec): SetupGeometry {
     cameraToScale !== undefined && cameraToMotion !== undefined
       ? parallaxFromDistances({ cameraToScaleMm: cameraToScale, cameraToMotionMm: cameraToMotion })
       : null;
-  const common = (source: RelativeLine['source'], relU: number): RelativeLine => ({
-    source,
-    relU,
-    dof: null,
-    common: true,
-  });
-  const lines = [
-    common('scale length', scale.relULength),
-    common('scale clicks', scale.relUClicks),
-    common('tilt', unknownTiltRelU(DEFAULT_TILT_U_DEG)),
-    ...(parallax ? [common('parallax', parallax.u / parallax.factor)] : []),
-  ];
   const warnings = [scale.warning, parallax?.warning ?? null].flatMap((each) =>
     each ? [each.sentence] : [],
   );
@@ -57,7 +44,7 @@ function uniform(setup: Setup, spec: ScaleSpec): SetupGeometry {
       axis === undefined || axis === 'auto'
         ? null
         : axisFromPoints(axis.from, axis.to, spec.clickU ?? DEFAULT_CLICK_U_PX),
-    lines,
+    parallax,
     warnings,
   };
 }
@@ -79,7 +66,7 @@ function oblique(setup: Setup, spec: ScaleSpec, plane: NonNullable<ScaleSpec['pl
             planePointMm(mapping, axis.to),
             (spec.clickU ?? DEFAULT_CLICK_U_PX) * (mmPerPx || 1),
           ),
-    lines: [],
+    parallax: null,
     warnings: mapping.warning ? [mapping.warning.sentence] : [],
   };
 }

@@ -17,6 +17,8 @@ export interface TrackTestOptions {
   readonly testPath: string;
   readonly signal?: AbortSignal | undefined;
   readonly onProgress?: ((progress: MeasureProgress) => void) | undefined;
+  /** Second pass over each clip with templates averaged over the first. */
+  readonly refine?: boolean | undefined;
   /** Clips to track; all that are used where absent. */
   readonly only?: ReadonlySet<string> | undefined;
   /** Outcomes of an earlier run that still hold; these clips are not tracked again. */

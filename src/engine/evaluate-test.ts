@@ -1,0 +1,68 @@
+import type { Configuration, DwellSpec, TestFile } from '../testfile/schema.ts';
+import { clipResults } from './clip-results.ts';
+import type { ClipOutcome } from './clip-tracks.ts';
+import { failedDwell, typedDwell } from './dwell-without-clip.ts';
+import { type EvaluatedClips, evaluateClips } from './evaluate-clips.ts';
+import { evaluateDwell } from './evaluate-dwell.ts';
+import { fitConfiguration } from './fit-configuration.ts';
+import { PROGRAM } from './program.ts';
+import { type DwellResult, RESULTS_FORMAT, RESULTS_VERSION, type Results } from './results.ts';
+
+/** Results, and each clip's displacement of the response marker along the motion axis, mm, NaN where lost. */
+export interface Evaluation {
+  readonly results: Results;
+  readonly displacements: ReadonlyMap<string, Float64Array>;
+}
+
+function dwellResult(
+  test: TestFile,
+  evaluated: EvaluatedClips,
+  configuration: Configuration,
+  spec: DwellSpec,
+): DwellResult {
+  if (spec.typed) return typedDwell(configuration, spec);
+  if (spec.clip === undefined)
+    return failedDwell(
+      configuration,
+      spec,
+      `Dwell "${spec.id}" has neither a clip nor a typed amplitude; film it, or type the amplitude in.`,
+    );
+  const clip = evaluated.clips.get(spec.clip);
+  if (clip) return evaluateDwell(configuration, spec, clip);
+  const known = test.clips.some((each) => each.id === spec.clip);
+  return failedDwell(
+    configuration,
+    spec,
+    evaluated.failures.get(spec.clip) ??
+      (known
+        ? `Clip "${spec.clip}" has not been measured yet.`
+        : `Dwell "${spec.id}" names clip "${spec.clip}", which is not in the test file; add the clip or correct the id.`),
+  );
+}
+
+/**
+ * Everything that follows from the tracks of a test's clips: dwells, ring-downs, resonances. Pure and quick, so that it
+ * can run again whenever a window, an exclusion or a typed number changes.
+ */
+export function evaluateTest(test: TestFile, outcomes: ReadonlyMap<string, ClipOutcome>): Evaluation {
+  const evaluated = evaluateClips(test, outcomes);
+  const dwells: DwellResult[] = [];
+  const resonances = test.configurations.map((configuration) => {
+    const own = configuration.dwells.map((spec) => dwellResult(test, evaluated, configuration, spec));
+    dwells.push(...own);
+    return fitConfiguration(configuration, own);
+  });
+  return {
+    results: {
+      format: RESULTS_FORMAT,
+      version: RESULTS_VERSION,
+      program: PROGRAM,
+      test: test.title,
+      clips: clipResults(test, outcomes, evaluated),
+      dwells,
+      ringdowns: [],
+      resonances,
+    },
+    displacements: new Map([...evaluated.clips].map(([id, clip]) => [id, clip.response.displacementMm])),
+  };
+}
