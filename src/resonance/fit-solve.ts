@@ -43,9 +43,12 @@ export function solveFit(layout: ParameterLayout, observations: Observations): S
   return best;
 }
 
-/** No other start can do materially better than a cost of a few per row, where rows bring their own uncertainty. */
+/**
+ * No other start can do materially better than a cost of a few per row: within the rows' own uncertainties, or
+ * within the hundredth of the largest amplitude that stands in for them.
+ */
 function describes(cost: number, observations: Observations): boolean {
-  return observations.origin === 'own' && cost < 3 * observations.value.length + 10;
+  return cost < 3 * observations.value.length;
 }
 
 /** Fits from given start values, such as those of a fit to nearly the same data. */
