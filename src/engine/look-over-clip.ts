@@ -2,6 +2,7 @@ import type { ClipInfo } from '../clip/clip-info.ts';
 import { decodeRegions } from '../clip/decode-regions.ts';
 import { findTemplate } from '../track/find-template.ts';
 import type { LumaImage } from '../track/luma-image.ts';
+import { searchCoarsely } from '../track/search-image.ts';
 import type { DecodeContext } from './frame-luma.ts';
 import type { PreparedMarker } from './prepare-markers.ts';
 
@@ -19,7 +20,7 @@ const REACH = 0.16; // of the picture's diagonal: further away than this a look-
 
 function find(image: LumaImage, marker: PreparedMarker, from: { x: number; y: number }): Sighting | null {
   const radiusPx = REACH * Math.hypot(image.width, image.height);
-  const near = findTemplate(image, marker.template, { near: { ...from, radiusPx }, minScore: FOUND_SCORE });
+  const near = searchCoarsely(image, marker.template, { near: { ...from, radiusPx }, minScore: FOUND_SCORE });
   // A marker that stands elsewhere at the start of this clip is sought in the whole picture.
   const found = near ?? findTemplate(image, marker.template, { minScore: FOUND_SCORE });
   if (!found || (near === null && found.ambiguous)) return null;
