@@ -23,6 +23,8 @@ export interface CorrectedDwell {
   readonly amplitudeBudget: Budget | null;
   readonly lagBudget: Budget | null;
   readonly codecLimited: boolean;
+  /** Why the dwell is refused; null where it is measured. Also the first of the warnings. */
+  readonly refusal: Warning | null;
   readonly warnings: readonly Warning[];
 }
 
@@ -45,16 +47,15 @@ export function correctDwell(facts: DwellFacts): CorrectedDwell {
       ? unknownExposure(frequencyHz, 1 / filming.frameRateHz)
       : exposureCorrection(frequencyHz, filming.exposureS, filming.exposureUS);
   const codec = codecOf(facts);
-  const found = [
-    ...filmingWarnings(frequencyHz, filming),
-    stamps.warning,
-    rows.warning,
-    exposure.warning,
-    codec.warning,
-  ];
-  const warnings = found.filter((warning) => warning !== null);
-  if (isRefused(frequencyHz, filming) || exposure.factor === null || rows.factor === null) {
-    return { ...UNKNOWN, codecLimited: codec.limited, warnings };
+  const folded = filmingWarnings(frequencyHz, filming);
+  const refusal =
+    (isRefused(frequencyHz, filming) ? folded[0] : undefined) ??
+    [exposure, rows].find((correction) => correction.factor === null)?.warning ??
+    null;
+  const found = [refusal, ...folded, stamps.warning, rows.warning, exposure.warning, codec.warning];
+  const warnings = [...new Set(found.filter((warning) => warning !== null))];
+  if (refusal !== null || exposure.factor === null || rows.factor === null) {
+    return { ...UNKNOWN, codecLimited: codec.limited, refusal, warnings };
   }
 
   const factor = stamps.factor * rows.factor * exposure.factor;
@@ -68,6 +69,7 @@ export function correctDwell(facts: DwellFacts): CorrectedDwell {
     amplitudeBudget: ofAmplitude,
     lagBudget: ofLag,
     codecLimited: codec.limited,
+    refusal: null,
     warnings,
   };
 }
