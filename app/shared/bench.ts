@@ -3,27 +3,29 @@ import { basename, dirname, join, resolve } from 'node:path';
 import { InputError } from '../../src/errors.ts';
 import type { Edit } from '../../src/testfile/edit-schema.ts';
 import { saveTest } from '../../src/testfile/on-disk.ts';
+import type { Intake } from './answers.ts';
 import type { BenchEvent, BenchState, HostFacts, JobState, Notice } from './bench-state.ts';
 import { ClipShelf } from './clip-shelf.ts';
 import type { Engine } from './engine.ts';
 import { FrameStore } from './frame-store.ts';
-import { addClipsEdit, type Intake, isTestName, sortPaths } from './intake.ts';
+import { addClipsEdit, isTestName, sortPaths } from './intake.ts';
 import { listFolder } from './list-folder.ts';
 import { MeasuringJob } from './measuring-job.ts';
 import { fileStem, newTestFile } from './new-test-file.ts';
 import type { InputOf, OperationHandlers } from './operations.ts';
 import { ResultsKeeper } from './results-keeper.ts';
 import { TestSession } from './test-session.ts';
-import { packTrack } from './tracks-bytes.ts';
 import type { UserFolder } from './user-folder.ts';
 
 /** What a bench needs from its host. */
 export interface BenchParts {
   readonly host: HostFacts;
-  /** Answers at once: frames, spots, fits. */
+  /** Shows: frames, spots, what clips are. */
   readonly quickEngine: Engine;
-  /** Measures, for minutes. */
+  /** Tracks clips, for minutes. */
   readonly measuringEngine: Engine;
+  /** Evaluates tracks and fits resonances, for fractions of a second. */
+  readonly evaluatingEngine: Engine;
   readonly userFolder: UserFolder;
   /** Where new tests are made when nothing else is said. */
   readonly testsFolder: string;
@@ -64,7 +66,15 @@ export class Bench {
     this.#parts = parts;
     this.#frames = new FrameStore(parts.quickEngine);
     this.#clips = new ClipShelf(parts.quickEngine);
-    this.#results = new ResultsKeeper(parts.quickEngine, (results) => this.#patch({ results }));
+    this.#results = new ResultsKeeper(
+      parts.evaluatingEngine,
+      (session, results) => {
+        session.resultsChanged();
+        if (this.#session === session) this.#patch({ results });
+      },
+      (error) =>
+        this.#notice({ level: 'error', text: error instanceof Error ? error.message : String(error) }),
+    );
   }
 
   /** What is open, for the host's window title and for its closing. */
@@ -94,7 +104,8 @@ export class Bench {
     this.#job?.cancel();
     this.#frames.clear();
     await this.#session?.close();
-    await Promise.all([this.#parts.quickEngine.close(), this.#parts.measuringEngine.close()]);
+    const { quickEngine, measuringEngine, evaluatingEngine } = this.#parts;
+    await Promise.all([quickEngine.close(), measuringEngine.close(), evaluatingEngine.close()]);
   }
 
   readonly handlers: OperationHandlers = {
@@ -133,10 +144,10 @@ export class Bench {
     measure: ({ clips }) => this.#measure(clips),
     cancelMeasuring: async () => this.#job?.cancel(),
     tracks: async ({ clip }) => {
-      const session = this.#need();
-      const track = session.measured.track(session.test, clip);
-      if (!track) throw new InputError(`The clip "${clip}" has not been measured with these markers yet.`);
-      return packTrack(track);
+      await this.#results.settled();
+      const bytes = await this.#parts.evaluatingEngine.call('motion', { clip });
+      if (!bytes) throw new InputError(`The clip "${clip}" has not been measured with these markers yet.`);
+      return bytes;
     },
 
     listFolder: ({ path }) => listFolder(path, this.#browseRoots()),
@@ -211,7 +222,6 @@ export class Bench {
     this.#patch(this.#sessionState(session));
     this.#results.refresh(session);
     if (this.#state.missing.length > 0) this.#patch({ missing: await session.missingClips() });
-    void this.#evaluateAgain(session);
   }
 
   async #edit(edit: Edit): Promise<void> {
@@ -289,8 +299,7 @@ export class Bench {
       clips,
       frameCounts: this.#clips.frameCounts(),
       onState: (state) => this.#showJob(job, state),
-      onMeasured: () => {
-        session.resultsChanged();
+      onTracked: () => {
         if (this.#session !== session) return;
         this.#patch({ tracked: session.measured.tracked(session.test) });
         this.#results.refresh(session);
@@ -303,23 +312,12 @@ export class Bench {
       this.#job = null;
       if (this.#session === session) {
         this.#patch({ job: null });
-        void this.#evaluateAgain(session);
       }
     }
   }
 
   #showJob(job: MeasuringJob, state: JobState): void {
     if (this.#job === job && this.#session) this.#patch({ job: state });
-  }
-
-  /** After a change that does not touch the tracks (scale, window, drive frequency) results follow by themselves. */
-  async #evaluateAgain(session: TestSession): Promise<void> {
-    if (this.#job || this.#session !== session) return;
-    const clips = session.clipsToEvaluate();
-    if (clips.length === 0) return;
-    await this.#measure(clips).catch((error: unknown) => {
-      this.#notice({ level: 'error', text: error instanceof Error ? error.message : String(error) });
-    });
   }
 
   #sessionState(session: TestSession): Pick<BenchState, 'test' | 'save' | 'history' | 'tracked'> {

@@ -1,11 +1,7 @@
 import { CancelledError, InputError } from '../../src/errors.ts';
-import { type Failure, toFailure } from './engine-protocol.ts';
+import type { CallOutcome } from './answers.ts';
+import { toFailure } from './engine-protocol.ts';
 import { isOperationName, type OperationHandlers, operations } from './operations.ts';
-
-/** How a call from the page ended. */
-export type CallOutcome =
-  | { readonly ok: true; readonly output: unknown }
-  | { readonly ok: false; readonly kind: 'refused' | 'failed' | 'fault'; readonly failure: Failure };
 
 /**
  * The gate every call from a page goes through, whichever host carries it: the name must be in the table and the

@@ -1,4 +1,5 @@
 import { CancelledError, InputError } from '../../src/errors.ts';
+import type { Failure } from './answers.ts';
 import type { EngineCallName, EngineCalls } from './engine.ts';
 
 /** From the bench to the engine's thread. */
@@ -11,12 +12,6 @@ export type FromEngine =
   | { readonly kind: 'progress'; readonly id: number; readonly progress: unknown }
   | { readonly kind: 'answer'; readonly id: number; readonly answer: unknown }
   | { readonly kind: 'failure'; readonly id: number; readonly failure: Failure };
-
-/** An error across a thread or a wire: what kind it is of, and its message. */
-export interface Failure {
-  readonly name: string;
-  readonly message: string;
-}
 
 /** An error as plain data. */
 export function toFailure(error: unknown): Failure {

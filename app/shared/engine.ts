@@ -1,4 +1,4 @@
-import type { ClipTracks } from '../../src/engine/clip-tracks.ts';
+import type { ClipOutcome } from '../../src/engine/clip-tracks.ts';
 import type { MeasureProgress } from '../../src/engine/progress.ts';
 import type { Results } from '../../src/engine/results.ts';
 import type { FoundClip, WantedClip } from '../../src/testfile/find-clips.ts';
@@ -12,13 +12,16 @@ export interface FramePicture {
   readonly jpeg: Uint8Array;
 }
 
-/** What a measurement gives: the results of the clips asked for, and where their markers were seen. */
-export interface MeasuredClips {
-  readonly results: Results;
-  readonly tracks: readonly ClipTracks[];
-  /** Displacement of the response marker along the motion axis, mm, one entry a frame, NaN where lost; by clip id. */
-  readonly displacementMm: ReadonlyMap<string, Float64Array>;
+/** The clips whose tracks go into an evaluation, each with the key under which its tracks were given. */
+export interface KeyedClip {
+  readonly clip: string;
+  readonly key: string;
 }
+
+/** An evaluated test, or the keys of tracks that the engine does not hold and wants to be given first. */
+export type EvaluationAnswer =
+  | { readonly results: Results; readonly wanting: null }
+  | { readonly results: null; readonly wanting: readonly string[] };
 
 /** The calls the engine answers in its worker thread: arguments, answer, and what is sent on the way. */
 export interface EngineCalls {
@@ -33,13 +36,26 @@ export interface EngineCalls {
     answer: SpotJudgement;
     progress: never;
   };
-  measure: {
-    args: { test: TestFile; testPath: string; clips: readonly string[] };
-    answer: MeasuredClips;
+  /** Tracks one clip. */
+  track: {
+    args: { test: TestFile; testPath: string; clip: string };
+    answer: ClipOutcome;
     progress: MeasureProgress;
   };
-  fit: { args: { test: TestFile }; answer: Results; progress: never };
-  hash: { args: { path: string }; answer: string; progress: never };
+  /** Gives the engine tracks to hold for evaluations. */
+  holdTracks: {
+    args: { tracks: readonly (readonly [string, ClipOutcome])[] };
+    answer: null;
+    progress: never;
+  };
+  /** Everything that follows from tracks, from typed amplitudes, and from what the dwells carry from before. */
+  evaluate: {
+    args: { test: TestFile; clips: readonly KeyedClip[] };
+    answer: EvaluationAnswer;
+    progress: never;
+  };
+  /** The motion record of a clip as of the last evaluation, packed; null where it has none. */
+  motion: { args: { clip: string }; answer: Uint8Array | null; progress: never };
   findClips: {
     args: { folder: string; wanted: readonly WantedClip[] };
     answer: readonly FoundClip[];

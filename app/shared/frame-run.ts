@@ -45,6 +45,7 @@ export async function frameRun(
     encoder: ['-c:v', 'mjpeg', '-q:v', JPEG_QUALITY, '-frames:v', String(range.end - range.first)],
     onlyKeyFrames: false,
     seek: range.first > 0,
+    strict: false,
   });
   const result = await runFfmpeg(ffmpeg.path, ffmpegArguments(pass), {
     signal: options.signal,

@@ -7,18 +7,6 @@ import { clipsInFolder, looksLikeClip } from '../../src/testfile/find-clips.ts';
 import { clipPath } from '../../src/testfile/on-disk.ts';
 import type { TestFile } from '../../src/testfile/schema.ts';
 
-/** What became of files that were dropped. */
-export interface Intake {
-  /** A test file among them was opened; everything else was then left alone. */
-  readonly opened: boolean;
-  /** Ids of the clips added, in the order of their names. */
-  readonly added: readonly string[];
-  /** Those of them whose name told no drive frequency. */
-  readonly unknownFrequency: readonly string[];
-  /** What was not taken, each with the reason as a sentence. */
-  readonly refused: readonly string[];
-}
-
 /** What was dropped, sorted out. */
 export interface SortedPaths {
   /** The test file to open, where one was dropped. */

@@ -3,25 +3,9 @@ import { dirname, isAbsolute, join, relative, resolve } from 'node:path';
 import { InputError } from '../../src/errors.ts';
 import { looksLikeClip } from '../../src/testfile/find-clips.ts';
 import { fileTrouble } from '../../src/testfile/on-disk.ts';
+import type { FolderEntry, FolderListing } from './answers.ts';
 
 const MOST_ENTRIES = 5000;
-
-/** One thing in a folder that can be opened. */
-export interface FolderEntry {
-  readonly name: string;
-  readonly path: string;
-  readonly kind: 'folder' | 'test' | 'clip';
-}
-
-/** What the page's file chooser shows of a folder. */
-export interface FolderListing {
-  readonly path: string;
-  /** The folder above; null at the top of what may be looked at. */
-  readonly parent: string | null;
-  readonly entries: readonly FolderEntry[];
-  /** Starting points that may be looked at. */
-  readonly roots: readonly string[];
-}
 
 /** Whether a path lies in a folder or is it; both absolute and without links. */
 export function isInside(path: string, folder: string): boolean {

@@ -1,79 +1,70 @@
-import type { DwellResult, Results, RingDownResult } from '../../src/engine/results.ts';
+import { type ClipOutcome, isTracked } from '../../src/engine/clip-tracks.ts';
+import type { Results } from '../../src/engine/results.ts';
 import type { TestFile } from '../../src/testfile/schema.ts';
-import type { MeasuredClips } from './engine.ts';
+import type { KeyedClip } from './engine.ts';
 import { measuringInputs, trackingInputs } from './measuring-inputs.ts';
-import type { MotionTrack } from './tracks-bytes.ts';
-
-const MOST_TRACKS = 300; // motion records kept; an older clip is read again when its record is asked for
-
-interface MeasuredClip {
-  readonly inputs: string;
-  readonly results: Results;
-}
 
 /**
- * What has been measured since the test was opened, kept with the inputs it was measured from: after an undo the
- * earlier results are valid again, after an edit they are not shown.
+ * What has been tracked since the test was opened, kept with the inputs it was tracked from, and the latest results:
+ * after an undo earlier tracks are valid again, after an edit of a marker they are not used.
  */
 export class MeasuredStore {
-  readonly #measured = new Map<string, MeasuredClip>();
-  readonly #tracks = new Map<string, MotionTrack>();
+  readonly #outcomes = new Map<string, ClipOutcome>();
+  #results: Results | null = null;
+  #inputs: ReadonlyMap<string, string> = new Map();
 
-  /** Keeps the results of clips, measured from this state of the test. */
-  add(test: TestFile, measured: MeasuredClips): void {
-    for (const track of measured.tracks) {
-      const key = trackKey(test, track.clip);
-      this.#tracks.delete(key);
-      this.#tracks.set(key, {
-        clip: track.clip,
-        frame: Float64Array.from(track.frameIndex),
-        timeS: track.timesS,
-        displacementMm:
-          measured.displacementMm.get(track.clip) ?? new Float64Array(track.timesS.length).fill(Number.NaN),
-        markers: track.markers
-          .filter((marker) => marker.role !== 'still')
-          .map(({ id, role, error, xPx, yPx, score, state }) => {
-            return { id, role, error, xPx, yPx, score, state: Float64Array.from(state) };
-          }),
-      });
-    }
-    for (const key of this.#tracks.keys()) {
-      if (this.#tracks.size <= MOST_TRACKS) break;
-      this.#tracks.delete(key);
-    }
-    for (const { id } of measured.results.clips) {
-      const inputs = measuringInputs(test, id);
-      this.#measured.set(`${id}\n${inputs}`, { inputs, results: onlyOf(measured.results, id) });
-    }
+  /** Keeps what came of tracking a clip with the markers of this state of the test. */
+  add(test: TestFile, outcome: ClipOutcome): void {
+    this.#outcomes.set(trackKey(test, outcome.clip), outcome);
   }
 
-  /** Results of a clip as the test stands; null where it was not measured so. */
-  of(test: TestFile, clip: string): Results | null {
-    return this.#measured.get(`${clip}\n${measuringInputs(test, clip)}`)?.results ?? null;
+  /** Keeps the results that an evaluation of this state of the test gave. */
+  setResults(test: TestFile, results: Results): void {
+    this.#results = results;
+    this.#inputs = new Map(test.clips.map(({ id }) => [id, measuringInputs(test, id)]));
   }
 
-  /** The motion record of a clip as its markers stand; null where it was not tracked so. */
-  track(test: TestFile, clip: string): MotionTrack | null {
-    return this.#tracks.get(trackKey(test, clip)) ?? null;
+  /** The latest results; null before the first evaluation. */
+  get results(): Results | null {
+    return this.#results;
+  }
+
+  /** What came of tracking a clip as its markers stand; undefined where it was not tracked so. */
+  outcome(test: TestFile, clip: string): ClipOutcome | undefined {
+    return this.#outcomes.get(trackKey(test, clip));
+  }
+
+  /** Whether the latest results hold for a clip that was tracked since the test was opened. */
+  holdsFor(test: TestFile, clip: string): boolean {
+    return this.outcome(test, clip) !== undefined && this.#inputs.get(clip) === measuringInputs(test, clip);
+  }
+
+  /** The clips that go into an evaluation of the test as it stands. */
+  keyedClips(test: TestFile): KeyedClip[] {
+    return test.clips
+      .map(({ id }) => ({ clip: id, key: trackKey(test, id) }))
+      .filter(({ key }) => this.#outcomes.has(key));
+  }
+
+  /** Tracks by their keys, for an engine that does not hold them. */
+  byKey(keys: readonly string[]): [string, ClipOutcome][] {
+    return keys.flatMap((key) => {
+      const outcome = this.#outcomes.get(key);
+      return outcome ? [[key, outcome] as [string, ClipOutcome]] : [];
+    });
   }
 
   /** Clips with a motion record. */
   tracked(test: TestFile): string[] {
-    return test.clips.map((each) => each.id).filter((id) => this.#tracks.has(trackKey(test, id)));
+    return test.clips
+      .map((each) => each.id)
+      .filter((id) => {
+        const outcome = this.outcome(test, id);
+        return outcome !== undefined && isTracked(outcome);
+      });
   }
 }
 
 function trackKey(test: TestFile, clip: string): string {
   return `${clip}\n${trackingInputs(test, clip)}`;
-}
-
-function onlyOf(results: Results, clip: string): Results {
-  const ofClip = (each: DwellResult | RingDownResult): boolean => each.clip === clip;
-  return {
-    ...results,
-    clips: results.clips.filter((each) => each.id === clip),
-    dwells: results.dwells.filter(ofClip),
-    ringdowns: results.ringdowns.filter(ofClip),
-    resonances: [],
-  };
 }

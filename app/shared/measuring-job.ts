@@ -1,7 +1,7 @@
 import type { MeasureProgress } from '../../src/engine/progress.ts';
 import { CancelledError } from '../../src/errors.ts';
 import type { JobState } from './bench-state.ts';
-import type { Engine, MeasuredClips } from './engine.ts';
+import type { Engine } from './engine.ts';
 import type { TestSession } from './test-session.ts';
 
 /** What a job tells of. */
@@ -12,8 +12,8 @@ export interface JobParts {
   /** Frames of the clips, where known, for the time left. */
   readonly frameCounts: ReadonlyMap<string, number>;
   readonly onState: (state: JobState) => void;
-  /** Called with each clip's results as soon as they are there. */
-  readonly onMeasured: (measured: MeasuredClips) => void;
+  /** Called as soon as a clip has been tracked. */
+  readonly onTracked: () => void;
 }
 
 let jobs = 0;
@@ -41,7 +41,7 @@ export class MeasuringJob {
 
   /** Measures; resolves when done or cancelled, rejects where the engine itself failed. */
   async run(): Promise<'done' | 'cancelled'> {
-    const { engine, session, clips, onMeasured } = this.#parts;
+    const { engine, session, clips, onTracked } = this.#parts;
     this.#set({});
     try {
       for (const [index, clip] of clips.entries()) {
@@ -52,13 +52,13 @@ export class MeasuringJob {
           frameCount: this.#parts.frameCounts.get(clip) ?? null,
         });
         const test = session.test;
-        const measured = await engine.call(
-          'measure',
-          { test, testPath: session.file.path, clips: [clip] },
+        const outcome = await engine.call(
+          'track',
+          { test, testPath: session.file.path, clip },
           { signal: this.#stop.signal, onProgress: (progress) => this.#progress(index, progress) },
         );
-        session.measured.add(test, measured);
-        onMeasured(measured);
+        session.measured.add(test, outcome);
+        onTracked();
       }
       return 'done';
     } catch (error) {

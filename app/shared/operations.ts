@@ -1,9 +1,8 @@
 import * as z from 'zod';
 import { editSchema } from '../../src/testfile/edit-schema.ts';
 import type { SpotJudgement } from '../../src/track/template.ts';
+import type { FolderListing, Intake } from './answers.ts';
 import type { ClipView } from './clip-view.ts';
-import type { Intake } from './intake.ts';
-import type { FolderListing } from './list-folder.ts';
 import { preferencesSchema } from './preferences.ts';
 
 /**

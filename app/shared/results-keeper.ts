@@ -1,43 +1,61 @@
 import type { Results } from '../../src/engine/results.ts';
 import type { Engine } from './engine.ts';
-import { mergeResults } from './merge-results.ts';
 import type { TestSession } from './test-session.ts';
 
-/** Keeps the results in step with the test: a fit after each change, the latest change only. */
+/** Keeps the results in step with the test: an evaluation after each change, the latest change only. */
 export class ResultsKeeper {
   readonly #engine: Engine;
-  readonly #onResults: (results: Results | null) => void;
+  readonly #onResults: (session: TestSession, results: Results) => void;
+  readonly #onTrouble: (error: unknown) => void;
   #wanted: TestSession | null = null;
-  #running = false;
+  #running: Promise<void> | null = null;
 
-  constructor(engine: Engine, onResults: (results: Results | null) => void) {
+  constructor(
+    engine: Engine,
+    onResults: (session: TestSession, results: Results) => void,
+    onTrouble: (error: unknown) => void,
+  ) {
     this.#engine = engine;
     this.#onResults = onResults;
+    this.#onTrouble = onTrouble;
   }
 
-  /** Says that the test or its measurements changed. */
+  /** Says that the test or its tracks changed. */
   refresh(session: TestSession): void {
     this.#wanted = session;
-    if (!this.#running) void this.#run();
+    this.#running ??= this.#run().finally(() => {
+      this.#running = null;
+    });
+  }
+
+  /** Done when the results are in step with the last change told. */
+  async settled(): Promise<void> {
+    await this.#running;
   }
 
   async #run(): Promise<void> {
-    this.#running = true;
     while (this.#wanted) {
       const session = this.#wanted;
       this.#wanted = null;
-      const { test } = session;
-      const measured = test.clips
-        .map((clip) => session.measured.of(test, clip.id))
-        .filter((each) => each !== null);
       try {
-        const fitted = await this.#engine.call('fit', { test: session.testToSave() });
+        const { test } = session;
+        const results = await this.#evaluate(session);
+        session.measured.setResults(test, results);
         // Shown although a change may have come meanwhile: the next turn follows at once.
-        this.#onResults(mergeResults(test, fitted, measured));
-      } catch {
-        this.#onResults(null);
+        this.#onResults(session, results);
+      } catch (error) {
+        this.#onTrouble(error);
       }
     }
-    this.#running = false;
+  }
+
+  async #evaluate(session: TestSession): Promise<Results> {
+    const args = { test: session.testToSave(), clips: session.measured.keyedClips(session.test) };
+    for (let attempt = 0; attempt < 3; attempt++) {
+      const answer = await this.#engine.call('evaluate', args);
+      if (answer.results) return answer.results;
+      await this.#engine.call('holdTracks', { tracks: session.measured.byKey(answer.wanting) });
+    }
+    throw new Error('the engine does not hold the tracks it was given');
   }
 }

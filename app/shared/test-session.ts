@@ -1,7 +1,7 @@
 import { constants } from 'node:fs';
 import { access, readFile, stat } from 'node:fs/promises';
 import { basename } from 'node:path';
-import type { Results } from '../../src/engine/results.ts';
+import { usedClips } from '../../src/engine/track-test.ts';
 import type { Edit } from '../../src/testfile/edit-schema.ts';
 import { Journal, recover, textHash } from '../../src/testfile/journal.ts';
 import { clipPath, loadTest } from '../../src/testfile/on-disk.ts';
@@ -13,7 +13,7 @@ import { pathInTest } from './intake.ts';
 import { type Lock, takeLock } from './lock-file.ts';
 import { MeasuredStore } from './measured-store.ts';
 import { measuringInputs } from './measuring-inputs.ts';
-import { withMeasured } from './record-measured.ts';
+import { recordMeasured } from './record-measured.ts';
 import { Saver } from './saver.ts';
 
 let openings = 0;
@@ -121,21 +121,18 @@ export class TestSession {
   /** The test with what was measured of it, for the file and the fit. */
   testToSave(): TestFile {
     const { test, measured } = this;
-    const results = new Map<string, Results | null>();
-    const resultsOf = (clip: string): Results | null => {
-      const known = results.get(clip);
-      if (known !== undefined) return known;
-      const found = measured.of(test, clip);
-      results.set(clip, found);
-      return found;
-    };
-    const holds = new Map<string, boolean>();
-    return withMeasured(test, resultsOf, (_, { clip }) => {
-      if (clip === undefined) return true;
-      const known = holds.get(clip) ?? this.#inputsAtOpening.get(clip) === measuringInputs(test, clip);
-      holds.set(clip, known);
-      return known;
-    });
+    const isNew = (clip: string): boolean => measured.holdsFor(test, clip);
+    return recordMeasured(
+      test,
+      measured.results,
+      isNew,
+      ({ clip }) => clip === undefined || this.#holdsFromBefore(clip),
+    );
+  }
+
+  /** Whether nothing that bears on a clip's results changed since the file was opened. */
+  #holdsFromBefore(clip: string): boolean {
+    return this.#inputsAtOpening.get(clip) === measuringInputs(this.test, clip);
   }
 
   clip(id: string): ClipSpec | undefined {
@@ -154,24 +151,14 @@ export class TestSession {
   /** Clips in use whose results are not there as the test stands, neither from now nor from an earlier run. */
   unmeasuredClips(): string[] {
     const { test, measured } = this;
-    const used = new Set<string>();
     const bare = new Set<string>();
-    for (const { dwells, sweeps, ringdowns } of test.configurations)
-      for (const reading of [...dwells, ...sweeps, ...ringdowns]) {
-        if (reading.clip === undefined) continue;
-        used.add(reading.clip);
-        if (!('measured' in reading && reading.measured)) bare.add(reading.clip);
-      }
-    const holds = (id: string): boolean =>
-      !bare.has(id) && this.#inputsAtOpening.get(id) === measuringInputs(test, id);
-    return test.clips
-      .map((each) => each.id)
-      .filter((id) => used.has(id) && !measured.of(test, id) && !holds(id));
-  }
-
-  /** Those of them whose markers were followed already: their results need no picture. */
-  clipsToEvaluate(): string[] {
-    return this.unmeasuredClips().filter((id) => this.measured.track(this.test, id) !== null);
+    for (const { dwells, sweeps, ringdowns } of test.configurations) {
+      for (const { clip, measured: before } of dwells) if (clip !== undefined && !before) bare.add(clip);
+      for (const { clip } of [...sweeps, ...ringdowns]) bare.add(clip);
+    }
+    return usedClips(test).filter(
+      (id) => !measured.outcome(test, id) && (bare.has(id) || !this.#holdsFromBefore(id)),
+    );
   }
 
   /** Ids of clips whose file is not there. */
