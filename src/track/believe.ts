@@ -1,5 +1,6 @@
 import type { Registration } from './registration.ts';
 import { ScoreHistory } from './score-history.ts';
+import type { Alias } from './template.ts';
 import type { TrackReason } from './track-step.ts';
 
 // A partly covered marker is still found within this of its prediction; a look-alike or an occluder is not.
@@ -7,8 +8,10 @@ const SURPRISE_PX = 3;
 const SURPRISE_PER_STEP = 0.5;
 // At the place where it was held a marker counts as uncovered from this score on: below it false fits occur.
 const UNCOVERED_SCORE = 0.7;
-// Where the texture repeats, a marker this share of the distance off its prediction may be either of two.
+// Where the texture repeats, a marker this share of the distance off its prediction may be either of two, if the repeat
+// looks as good as what was found.
 const ALIAS_SHARE = 1 / 3;
+const ALIKE_WITHIN = 0.1;
 // A patch registered with a little of it outside the region has lost nothing yet.
 const BORDER_SLACK_PX = 0.5;
 
@@ -22,8 +25,8 @@ export interface Circumstances {
   readonly largestStepPx: number;
   /** Side of the patch, px. */
   readonly patchPx: number;
-  /** Distance to the nearest look-alike of the template, px; null where there is none. */
-  readonly aliasPx: number | null;
+  /** The nearest look-alike of the template. */
+  readonly alias: Alias | null;
   /** Whether the marker was lost in the frame before. */
   readonly wasLost: boolean;
 }
@@ -46,6 +49,8 @@ export function believe(registration: Registration, limit: number, seen: Circums
     return { believed: false, reason: 'covered' };
   }
   if (low) return { believed: true, reason: 'low-score' };
-  const mistakable = seen.aliasPx !== null && seen.surprisePx > ALIAS_SHARE * seen.aliasPx;
+  const { alias } = seen;
+  const mistakable =
+    alias !== null && alias.score > score - ALIKE_WITHIN && seen.surprisePx > ALIAS_SHARE * alias.distancePx;
   return { believed: true, reason: mistakable ? 'alias-jump' : null };
 }

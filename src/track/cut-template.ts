@@ -80,7 +80,7 @@ export function cutTemplate(image: LumaImage, x: number, y: number, options: Cut
     raw,
     noiseDn: options.noiseDn ?? imageNoiseDn(image, noiseArea(x, y)),
     framesAveraged: 1,
-    aliasPx: null,
+    alias: null,
   };
 }
 

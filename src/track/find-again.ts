@@ -20,8 +20,8 @@ export class SearchPlan {
   constructor(private readonly patchPx: number) {}
 
   /**
-   * The circle to search: as far as the marker can have moved since it was seen, at most 128 px; every tenth frame of a
-   * loss, and where nothing is known, the whole region (null).
+   * The circle to search: as far as the marker can have moved since it was seen, at most 128 px; the whole region (null)
+   * every tenth frame of a loss, and where nothing is known.
    */
   near(
     expected: Point | null,
@@ -40,18 +40,37 @@ export class SearchPlan {
   }
 }
 
-/**
- * Which of two fits alike is the marker: the one clearly nearer to where it was expected; the better one where nothing was
- * expected. Null where neither is: better no point than that of a look-alike.
- */
-export function chooseFit(found: FoundTemplate, expected: Point | null): TemplateFit | null {
-  const { second } = found;
-  if (!found.ambiguous || !second || !expected) return found;
-  const apart = Math.hypot(found.x - second.x, found.y - second.y);
-  const [nearer] = [found, second].sort((a, b) => distanceTo(a, expected) - distanceTo(b, expected));
-  return nearer && distanceTo(nearer, expected) < NEARER_SHARE * apart ? nearer : null;
+/** A fit chosen among those a search found. */
+export interface ChosenFit {
+  readonly fit: TemplateFit;
+  /** Whether the other of two may have been the right one. */
+  readonly ambiguous: boolean;
 }
 
-function distanceTo(fit: TemplateFit, point: Point): number {
-  return Math.hypot(fit.x - point.x, fit.y - point.y);
+/**
+ * Which of two fits alike is the marker: the only one where the marker may be expected, without a doubt; else the one
+ * clearly nearer to where it was expected, or the better one where nothing was expected. Null where neither is:
+ * better no point than that of a look-alike.
+ *
+ * @param isPlausible whether the marker's motion so far leads one to expect it there
+ */
+export function chooseFit(
+  found: FoundTemplate,
+  expected: Point | null,
+  isPlausible: (place: Point) => boolean,
+): ChosenFit | null {
+  const { second } = found;
+  if (!found.ambiguous || !second) return { fit: found, ambiguous: false };
+  if (!expected) return { fit: found, ambiguous: true };
+  if (isPlausible(found) !== isPlausible(second)) {
+    return { fit: isPlausible(found) ? found : second, ambiguous: false };
+  }
+  const apart = distance(found, second);
+  const nearer = distance(found, expected) <= distance(second, expected) ? found : second;
+  return distance(nearer, expected) < NEARER_SHARE * apart ? { fit: nearer, ambiguous: true } : null;
+}
+
+/** Distance of two places, px. */
+export function distance(a: Point, b: Point): number {
+  return Math.hypot(a.x - b.x, a.y - b.y);
 }

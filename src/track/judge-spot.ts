@@ -4,7 +4,7 @@ import { imageNoiseDn } from './image-noise.ts';
 import type { LumaImage } from './luma-image.ts';
 import { type PatchTexture, patchTexture } from './patch-texture.ts';
 import { listFits } from './search-image.ts';
-import type { SpotJudgement, Template } from './template.ts';
+import type { Alias, SpotJudgement, Template } from './template.ts';
 
 /** Sizes tried where none is given; smaller ones are too easily mistaken, larger ones seldom fit on the part. */
 const SIZES_PX = [25, 31, 41, 51, 61, 81, 101, 121] as const;
@@ -131,7 +131,7 @@ function judge(
     aliasPx: alias?.distancePx ?? null,
     aliasScore: alias?.score ?? null,
   };
-  return { judgement, template: reason === null ? { ...template, aliasPx: judgement.aliasPx } : null };
+  return { judgement, template: reason === null ? { ...template, alias } : null };
 }
 
 interface Candidate {
@@ -184,11 +184,6 @@ function refusal(texture: PatchTexture, saturatedFraction: number): string | nul
     );
   }
   return null;
-}
-
-interface Alias {
-  readonly distancePx: number;
-  readonly score: number;
 }
 
 /** The nearest look-alike within the travel. */

@@ -1,6 +1,6 @@
 import { AdaptiveRegistrar, type MotionModel } from './adaptive-registrar.ts';
 import { believe } from './believe.ts';
-import { chooseFit, type Point, SearchPlan } from './find-again.ts';
+import { chooseFit, distance, type Point, SearchPlan } from './find-again.ts';
 import type { LumaImage } from './luma-image.ts';
 import type { Deformation } from './patch-sampler.ts';
 import { expectedScore } from './patch-texture.ts';
@@ -15,8 +15,8 @@ import type { FoundTemplate, TemplateSearch } from './template-search.ts';
 import type { LostStep, MeasuredStep, TrackReason, TrackStep } from './track-step.ts';
 import { Travel, type TravelBox } from './travel.ts';
 
-// Frames that a marker found elsewhere, or one of two alike, must stay with before it is trusted.
-const FRAMES_TO_CONFIRM = 10;
+// While a marker is tracked elsewhere, it is looked for this often, in frames, in the range it was trusted in.
+const LOOK_HOME_EVERY = 10;
 // A region should have room for two more steps, and for what patch and prediction need.
 const ROOM_PX = 6;
 const ROOM_STEPS = 2;
@@ -54,7 +54,9 @@ export class MarkerTracker {
   private readonly patchPx: number;
   private held: Point | null;
   private lostFrames = 0;
-  private unconfirmed: { readonly reason: TrackReason; frames: number } | null = null;
+  private frames = 0;
+  // A doubt that later frames cannot settle by themselves.
+  private doubt: TrackReason | null = null;
   private found: FoundTemplate | null = null;
   // The best of what was refused in this frame.
   private refusal: TrackReason = 'covered';
@@ -71,7 +73,6 @@ export class MarkerTracker {
     this.patchPx = Math.min(template.widthPx, template.heightPx);
     this.plan = new SearchPlan(this.patchPx);
     this.held = options.start ? { x: options.start.x, y: options.start.y } : null;
-    if (this.held) this.travelled.include(this.held.x, this.held.y);
   }
 
   /** The motion model in use; it changes from translation to affine at most once. */
@@ -108,15 +109,39 @@ export class MarkerTracker {
    */
   step(image: LumaImage, offsetX: number, offsetY: number, timeS: number): TrackStep {
     const region = { image, offsetX, offsetY };
+    this.frames++;
     this.refusal = 'covered';
     this.bestRefused = -1;
-    const expected = this.lostFrames > 0 ? this.held : (this.predictor.predict(timeS) ?? this.held);
-    let accepted = expected && this.tryAt(region, expected);
-    if (!accepted && expected && this.held && distance(expected, this.held) > 1) {
-      accepted = this.tryAt(region, this.held);
-    }
-    accepted ??= this.trySearch(region, expected);
+    const accepted = this.lookHome(region) ?? this.lookWhereExpected(region, timeS);
     return accepted ? this.keep(region, timeS, accepted) : this.lose(region);
+  }
+
+  private lookWhereExpected(region: Region, timeS: number): Accepted | null {
+    const { held } = this;
+    const expected = this.lostFrames > 0 ? held : (this.predictor.predict(timeS) ?? held);
+    if (!expected || !held) return this.trySearch(region, null);
+    return (
+      this.tryAt(region, expected) ??
+      (distance(expected, held) > 1 ? this.tryAt(region, held) : null) ??
+      this.trySearch(region, expected)
+    );
+  }
+
+  /** A marker that is tracked elsewhere may be a look-alike, and the marker itself back in its place. */
+  private lookHome(region: Region): Accepted | null {
+    const { box, extentPx } = this.travelled;
+    if (this.doubt !== 'found-elsewhere' || !box || this.frames % LOOK_HOME_EVERY !== 0) return null;
+    const home = { x: (box.minX + box.maxX) / 2, y: (box.minY + box.maxY) / 2 };
+    const near = {
+      x: home.x - region.offsetX,
+      y: home.y - region.offsetY,
+      radiusPx: extentPx + this.patchPx / 2,
+    };
+    const found = this.search(region.image, this.template, { minScore: this.history.limit, near });
+    if (!found || found.ambiguous) return null;
+    const accepted = this.tryAt(region, inCodedFrame(found, region));
+    if (accepted) this.predictor.clear();
+    return accepted;
   }
 
   /** Registers from an expected place. */
@@ -130,7 +155,7 @@ export class MarkerTracker {
       roomPx: roomPx(region, template, place.x, place.y),
       largestStepPx: this.predictor.largestStepPx(),
       patchPx: this.patchPx,
-      aliasPx: template.aliasPx,
+      alias: template.alias,
       wasLost: this.lostFrames > 0,
     });
     if (believed) return { registration, reason, ...place };
@@ -142,36 +167,31 @@ export class MarkerTracker {
   private trySearch(region: Region, expected: Point | null): Accepted | null {
     const { image, offsetX, offsetY } = region;
     const { history, travelled } = this;
-    const near = this.plan.near(
-      expected,
-      this.lostFrames,
-      travelled.extentPx,
-      this.predictor.largestStepPx(),
-    );
+    // A start that was given and never confirmed is a hint, not a place to stay near.
+    const last = travelled.box ? expected : null;
+    const near = this.plan.near(last, this.lostFrames, travelled.extentPx, this.predictor.largestStepPx());
     const found = this.search(image, this.template, {
-      minScore: this.plan.leastScore(history.usual, expected !== null),
+      minScore: this.plan.leastScore(history.usual, last !== null),
       ...(near && { near: { x: near.x - offsetX, y: near.y - offsetY, radiusPx: near.radiusPx } }),
     });
     this.found = found && inCodedFrame(found, region);
     if (!this.found) return null;
-    const fit = chooseFit(this.found, expected);
-    if (!fit) {
+    // A moving part is easily a patch further on; after a loss a look-alike is likelier than that.
+    const slackPx = this.lostFrames > 0 ? this.patchPx / 2 : this.patchPx;
+    const isPlausible = ({ x, y }: Point): boolean => travelled.allows(x, y, slackPx);
+    const chosen = chooseFit(this.found, expected, isPlausible);
+    if (!chosen) {
       this.refuse('ambiguous', this.found.score);
       return null;
     }
-
-    // A moving part is easily a patch further on; after a loss a look-alike is likelier than that.
-    const slackPx = this.lostFrames > 0 ? this.patchPx / 2 : this.patchPx;
-    const elsewhere = expected !== null && !travelled.allows(fit.x, fit.y, slackPx);
-    if (elsewhere && fit.score < history.limit) {
-      this.refuse('covered', fit.score);
+    const elsewhere = !isPlausible(chosen.fit);
+    if (elsewhere && chosen.fit.score < history.limit) {
+      this.refuse('covered', chosen.fit.score);
       return null;
     }
-    const accepted = this.tryAt(region, fit);
-    if (accepted && (elsewhere || this.found.ambiguous)) {
-      const reason = this.found.ambiguous ? 'ambiguous' : 'found-elsewhere';
-      this.unconfirmed = { reason, frames: FRAMES_TO_CONFIRM };
-    }
+    const accepted = this.tryAt(region, chosen.fit);
+    if (accepted && chosen.ambiguous) this.doubt = 'ambiguous';
+    else if (accepted && elsewhere) this.doubt ??= 'found-elsewhere';
     return accepted;
   }
 
@@ -189,8 +209,9 @@ export class MarkerTracker {
     this.held = { x, y };
     this.predictor.push(timeS, x, y);
     this.history.push(registration.score);
-    const reason = accepted.reason ?? this.unconfirmed?.reason ?? null;
-    if (this.unconfirmed && --this.unconfirmed.frames <= 0) this.unconfirmed = null;
+    if (accepted.reason === 'alias-jump') this.doubt ??= 'alias-jump';
+    if (this.doubt === 'found-elsewhere' && this.travelled.allows(x, y, 0)) this.doubt = null;
+    const reason = accepted.reason ?? this.doubt;
     if (reason === null) this.travelled.include(x, y);
 
     const covariance = this.uncertaintyOf(this.registrar.lastModel).ofRegistration(registration);
@@ -239,10 +260,6 @@ export class MarkerTracker {
     }
     return uncertainty;
   }
-}
-
-function distance(a: Point, b: Point): number {
-  return Math.hypot(a.x - b.x, a.y - b.y);
 }
 
 function inCodedFrame(found: FoundTemplate, { offsetX, offsetY }: Region): FoundTemplate {

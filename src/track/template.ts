@@ -27,8 +27,15 @@ export interface Template {
   readonly noiseDn: number;
   /** Number of frames averaged in it; 1 for a cut one. */
   readonly framesAveraged: number;
-  /** Distance to the nearest place that looks alike in the frame it was cut from, px; null where none does. */
-  readonly aliasPx: number | null;
+  /** The nearest place that looks alike in the frame it was cut from; null where none does or none was sought. */
+  readonly alias: Alias | null;
+}
+
+/** A place that looks like a marker. */
+export interface Alias {
+  readonly distancePx: number;
+  /** ZNCC with the marker. */
+  readonly score: number;
 }
 
 /** What is known of a spot before it is tracked. Grey values are DN on a scale of 0 to 255. */

@@ -1,9 +1,10 @@
 /**
  * Why a frame is doubtful or lost.
  * - `low-score`: the marker looks less like its template than it did in the frames before.
- * - `alias-jump`: the texture repeats, and the marker moved so far from its prediction that it may be a repeat.
- * - `found-elsewhere`: found again outside the range it had moved in, and not yet seen there long enough.
- * - `ambiguous`: two places fit alike.
+ * - `alias-jump`: the texture repeats, and the marker was found so far from its prediction that it may be a repeat; also
+ *   in the frames after.
+ * - `found-elsewhere`: found again outside the range it had moved in, a look-alike perhaps; until it is back there.
+ * - `ambiguous`: two places fit alike; also in the frames after.
  * - `at-border`: it would stand across the border of the region that was given.
  * - `covered`: nothing in the region looks enough like it.
  */
