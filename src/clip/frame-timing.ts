@@ -73,17 +73,18 @@ function fitLattice(ticks: Float64Array, middle: number): { interval: number; rm
   const counts = new Float64Array(n);
   for (let i = 1; i < n; i++) counts[i] = counts[i - 1]! + Math.round((ticks[i]! - ticks[i - 1]!) / middle);
   const meanCount = counts.reduce((a, b) => a + b, 0) / n;
-  const meanTicks = ticks.reduce((a, b) => a + b, 0) / n;
+  const sinceFirst = ticks.map((tick) => tick - ticks[0]!);
+  const meanTicks = sinceFirst.reduce((a, b) => a + b, 0) / n;
   let xx = 0;
   let xy = 0;
   for (let i = 0; i < n; i++) {
     xx += (counts[i]! - meanCount) ** 2;
-    xy += (counts[i]! - meanCount) * (ticks[i]! - meanTicks);
+    xy += (counts[i]! - meanCount) * (sinceFirst[i]! - meanTicks);
   }
   const interval = xy / xx;
   let squares = 0;
   for (let i = 0; i < n; i++) {
-    squares += (ticks[i]! - meanTicks - interval * (counts[i]! - meanCount)) ** 2;
+    squares += (sinceFirst[i]! - meanTicks - interval * (counts[i]! - meanCount)) ** 2;
   }
   return { interval, rms: Math.sqrt(squares / n) };
 }

@@ -133,7 +133,8 @@ export class NutReader {
 
   #readFrameHeader(from: NutCursor): void {
     const main = this.#main;
-    const code = main?.frameCodes[from.byte()];
+    const first = from.byte();
+    const code = main?.frameCodes[first];
     if (main === null || code === undefined) throw new Error('A NUT frame comes before the main header.');
     let flags = code.flags;
     if (flags & FrameFlag.codedFlags) flags ^= from.unsigned();

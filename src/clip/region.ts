@@ -19,7 +19,9 @@ export interface CodedSize {
  * The rectangle that is really decoded for a wished one: all numbers even (chroma samples come in pairs, and an
  * odd corner would silently be moved by the decoder), at least 2 x 2, shifted inside the picture rather than cut,
  * cut only where it is larger than the picture. The whole picture stays whole even when its size is odd.
- * Applying it twice changes nothing.
+ *
+ * The size depends on the wished size alone, so that equal wishes stay equal: an odd corner moves up and left by
+ * one, and with it the far edge. Applying it twice changes nothing.
  */
 export function fitRegion(wished: Region, picture: CodedSize): Region {
   const { codedWidth, codedHeight } = picture;

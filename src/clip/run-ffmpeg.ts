@@ -76,7 +76,8 @@ export async function runFfmpeg(
   const child = spawn(executable, args, { stdio: ['ignore', 'pipe', 'pipe'], windowsHide: true });
   leaveNoOrphan(child);
   const stop = (why: EndReason): void => {
-    cause ??= why;
+    if (cause !== null) return; // the first reason counts, and asking once is enough
+    cause = why;
     stopProcess(child);
   };
   const cancel = (): void => stop('cancelled');

@@ -1,0 +1,3 @@
+#!/bin/sh
+echo "this is some other program"
+exit 0
