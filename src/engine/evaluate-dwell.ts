@@ -1,8 +1,10 @@
+import { unknownFrequencyWarning } from '../camera/aliasing.ts';
 import type { BudgetEntry } from '../camera/amplitude-budget.ts';
 import { judgeShake, stillRmsPx } from '../camera/camera-shake.ts';
 import { compressionOf } from '../camera/codec-limit.ts';
 import { type CorrectedDwell, correctDwell, type FilmingFacts } from '../camera/correct-dwell.ts';
 import { geometryLines } from '../camera/geometry-lines.ts';
+import { smearWarning } from '../camera/marker-smear.ts';
 import { type RowReadout, readoutDirection, readoutFraction } from '../camera/rolling-shutter.ts';
 import type { RowFacts } from '../camera/row-correction.ts';
 import { checkFrequency } from '../camera/slow-motion.ts';
@@ -165,8 +167,15 @@ function seen(
 function frequencyWarnings(clip: EvaluatedClip, spec: DwellSpec, judged: JudgedDwell): string[] {
   const { value, u } = judged.measuredHz;
   const rate = clip.tracks.facts.frameRate;
-  if (spec.driveHz === undefined || value === null || value <= 0 || rate === null) return [];
+  if (value === null || value <= 0 || rate === null) return [];
+  if (spec.driveHz === undefined) return [unknownFrequencyWarning(value, rate).sentence];
   const { warning } = checkFrequency(value, u ?? 0, spec.driveHz, rate);
+  return warning ? [warning.sentence] : [];
+}
+
+function smearWarnings(clip: EvaluatedClip, judged: JudgedDwell, scale: number): string[] {
+  const peakSpeedPxPerS = (2 * Math.PI * judged.frequencyHz * judged.amplitudeMm) / scale;
+  const warning = smearWarning(peakSpeedPxPerS, clip.spec.exposure ?? null);
   return warning ? [warning.sentence] : [];
 }
 
@@ -228,7 +237,7 @@ export function evaluateDwell(
   });
   const refused = response.amplitude.value === null;
   const reason = refused
-    ? (response.warnings[0]?.sentence ?? 'This frequency cannot be measured at this frame rate.')
+    ? (response.refusal?.sentence ?? 'This frequency cannot be measured at this frame rate.')
     : null;
   return {
     ...emptyDwell(configuration, spec),
@@ -258,6 +267,7 @@ export function evaluateDwell(
       ...judged.warnings,
       ...(refused ? [] : response.warnings.map((warning) => warning.sentence)),
       ...frequencyWarnings(clip, spec, judged),
+      ...smearWarnings(clip, judged, scale),
       ...shakeWarnings(clip),
     ],
     error: reason,

@@ -25,6 +25,8 @@ export interface PreparedMarker {
 export interface PreparedSetup {
   readonly markers: readonly PreparedMarker[];
   readonly refused: ReadonlyMap<string, string>;
+  /** What may still go wrong with a marker, one sentence each, by the clip it was marked in. */
+  readonly cautions: ReadonlyMap<string, readonly string[]>;
   /** Size of the picture they were marked in, coded pixels; null where none could be prepared. */
   readonly picture: { readonly codedWidth: number; readonly codedHeight: number } | null;
 }
@@ -73,6 +75,7 @@ export async function prepareMarkers(
 ): Promise<PreparedSetup> {
   const markers: PreparedMarker[] = [];
   const refused = new Map<string, string>();
+  const cautions = new Map<string, string[]>();
   const frames = new Map<string, LumaImage>();
   let picture: PreparedSetup['picture'] = null;
 
@@ -99,6 +102,8 @@ export async function prepareMarkers(
       const { template, judgement } = chooseTemplate(image, at.x, at.y, judgeOptions(spec));
       if (!template)
         throw new InputError(`marker "${spec.id}": ${judgement.reason ?? 'the spot cannot be tracked'}`);
+      const said = judgement.warnings.map((warning) => `marker "${spec.id}": ${warning}`);
+      cautions.set(clip, [...(cautions.get(clip) ?? []), ...said]);
       picture ??= { codedWidth: info.codedWidth, codedHeight: info.codedHeight };
       markers.push({ id: spec.id, role: spec.role, template, judgement, clip, frame, at });
     } catch (error) {
@@ -111,5 +116,5 @@ export async function prepareMarkers(
     const still = stillPatch(setup, firstClip, info, image);
     if (still) markers.push(still);
   }
-  return { markers, refused, picture };
+  return { markers, refused, cautions, picture };
 }

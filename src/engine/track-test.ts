@@ -103,7 +103,14 @@ class Tracking {
       }
       const sha256 = await contentHash(info.path, this.context.signal);
       const tracks = await trackClip({ spec, info, setup: prepared, sha256 }, this.context, onTracked);
-      return { ...tracks, warnings: [...tracks.warnings, ...prepared.refused.values()] };
+      return {
+        ...tracks,
+        warnings: [
+          ...tracks.warnings,
+          ...(prepared.cautions.get(spec.id) ?? []),
+          ...prepared.refused.values(),
+        ],
+      };
     } catch (error) {
       if (error instanceof InputError) return { clip: spec.id, error: error.message };
       throw error;
