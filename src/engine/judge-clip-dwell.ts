@@ -1,9 +1,10 @@
+import type { DwellJudgement, Verdict } from '../motion/dwell-judgement.ts';
+import type { JointFit } from '../motion/joint-fit.ts';
+import { judgeDwell } from '../motion/verdict.ts';
 import { type Measured, measured } from '../numeric/measured.ts';
-import { fitSine } from '../sine/four-parameter.ts';
+import type { SineFit } from '../sine/sine-fit.ts';
 import type { DwellSpec } from '../testfile/schema.ts';
-import { inWindow, sineInWindow } from './dwell-at-frequency.ts';
 import type { EvaluatedClip } from './evaluate-clips.ts';
-import type { Verdict } from './results.ts';
 
 /** The steady motion of a dwell as seen, before any correction for filming. */
 export interface JudgedDwell {
@@ -39,39 +40,68 @@ export interface UnjudgedDwell {
   readonly lostFrames: number;
 }
 
-/** Judges the dwell in its window, or finds one. */
-export function judgeClipDwell(clip: EvaluatedClip, spec: DwellSpec): JudgedDwell | UnjudgedDwell {
-  const { timesS } = clip.response;
-  const window: readonly [number, number] = spec.window ?? [timesS[0] ?? 0, timesS.at(-1) ?? 0];
-  const part = inWindow(clip.response, window);
-  const lostFrames = part.displacementMm.filter((value) => !Number.isFinite(value)).length;
-  const free = fitSine(
-    part.timesS,
-    part.displacementMm,
-    spec.driveHz === undefined ? {} : { startHz: spec.driveHz },
-  );
-  const frequencyHz = spec.driveHz ?? free?.frequencyHz ?? 0;
-  const sine = sineInWindow(clip.response, window, frequencyHz);
-  if (!sine) return { error: 'too little', verdict: 'failed', lostFrames };
+/** The sine that counts: the joint fit where it can tell steady motion from transient, else the fit of the window. */
+function steadySine(judgement: DwellJudgement): SteadySine | null {
+  const { jointFit, fit } = judgement;
+  if (jointFit?.conditioned) return { ...asSteady(jointFit), joint: jointFit };
+  return fit ? { ...asSteady(fit), joint: null } : null;
+}
+
+interface SteadySine {
+  readonly amplitudeMm: number;
+  readonly amplitudeU: number;
+  readonly dof: number;
+  readonly phaseRad: number;
+  readonly phaseU: number;
+  readonly residualRmsMm: number;
+  readonly joint: JointFit | null;
+}
+
+function asSteady(fit: SineFit | JointFit): Omit<SteadySine, 'joint'> {
   return {
+    amplitudeMm: fit.amplitude,
+    amplitudeU: fit.amplitudeU,
+    dof: fit.effectiveDof,
+    phaseRad: fit.phaseRad - 2 * Math.PI * fit.frequencyHz * fit.referenceTimeS,
+    phaseU: fit.phaseU,
+    residualRmsMm: Math.sqrt(fit.residualSumOfSquares / Math.max(1, fit.frames)),
+  };
+}
+
+/** An effect of unknown sign that is at most `largest`: rectangular distribution (JCGM 100, 4.3.7). */
+function rectangularU(largest: number): number {
+  return Math.abs(largest) / Math.sqrt(3);
+}
+
+/** Judges the dwell in the window given, or finds its steady window, and fits it. */
+export function judgeClipDwell(clip: EvaluatedClip, spec: DwellSpec): JudgedDwell | UnjudgedDwell {
+  const judgement = judgeDwell(clip.response, {
+    driveHz: spec.driveHz ?? null,
+    ...(spec.window ? { window: spec.window } : {}),
+    ...(clip.drive ? { driveRecord: clip.drive } : {}),
+  });
+  const { frequencyHz, windowS, verdict, lostFrames, sentence } = judgement;
+  const sine = steadySine(judgement);
+  if (!sine || frequencyHz === null || windowS === null) return { error: sentence, verdict, lostFrames };
+  const { joint } = sine;
+  const steady = joint !== null || verdict === 'steady';
+  return {
+    ...sine,
     frequencyHz,
-    measuredHz: measured(free?.frequencyHz ?? null, free?.frequencyU ?? null),
-    amplitudeMm: sine.amplitude,
-    amplitudeU: sine.amplitudeU,
-    dof: sine.dof,
-    phaseRad: sine.phaseRad,
-    phaseU: sine.phaseU,
-    residualRmsMm: sine.residualRms,
-    window,
+    measuredHz: measured(
+      judgement.freeFit?.frequencyHz ?? frequencyHz,
+      judgement.freeFit?.frequencyU ?? null,
+    ),
+    window: joint ? [joint.originS, joint.endS] : windowS,
     lostFrames,
-    verdict: 'steady',
-    sentence: '',
-    leftover: null,
-    leftoverU: 0,
-    driftU: 0,
-    jointFit: false,
-    transient: null,
-    harmonics: [],
-    warnings: [],
+    verdict,
+    sentence,
+    leftover: judgement.leftover.value,
+    leftoverU: joint ? 0 : rectangularU((judgement.leftoverEffect ?? 0) * sine.amplitudeMm),
+    driftU: steady ? 0 : rectangularU(((judgement.drift.value ?? 0) / 2) * sine.amplitudeMm),
+    jointFit: joint !== null,
+    transient: joint ? { naturalHz: joint.naturalHz, dampingRatio: joint.dampingRatio } : null,
+    harmonics: judgement.harmonics.map((each) => each.value ?? 0),
+    warnings: judgement.warnings.map((warning) => warning.sentence),
   };
 }

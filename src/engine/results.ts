@@ -1,3 +1,4 @@
+import type { Verdict } from '../motion/dwell-judgement.ts';
 import type { Measured } from '../numeric/measured.ts';
 
 /**
@@ -9,9 +10,6 @@ import type { Measured } from '../numeric/measured.ts';
 export const RESULTS_FORMAT = 'dwellbook-results';
 /** The version of that format. */
 export const RESULTS_VERSION = 1;
-
-/** What was found of a dwell; the words are explained in the guide. */
-export type Verdict = 'steady' | 'settling' | 'beating' | 'drifting' | 'lost' | 'failed';
 
 /** One source of a dwell's uncertainty. */
 export interface BudgetLine {
