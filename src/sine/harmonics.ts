@@ -18,8 +18,8 @@ export function aliasHz(frequencyHz: number, rateHz: number): number {
   return Math.abs(frequencyHz - rateHz * Math.round(frequencyHz / rateHz));
 }
 
-/** Harmonics whose place in the sampled spectrum is their own: not at 0, not at another's alias. */
-function separableHarmonics(samples: Samples, frequencyHz: number): number[] {
+/** Harmonics (2 to 5) whose place in the sampled spectrum is their own: not at 0, not at another's alias. */
+export function separableHarmonics(samples: Samples, frequencyHz: number): number[] {
   const rateHz = 1 / medianIntervalS(samples);
   const apart = RESOLUTION / durationS(samples);
   const taken = [aliasHz(frequencyHz, rateHz)];

@@ -1,0 +1,192 @@
+import { type Measured, measured } from '../numeric/measured.ts';
+import { durationS, type Samples, spanS } from '../sine/samples.ts';
+import type { JointFit } from './joint-fit.ts';
+import { chooseModel, type FrequencyKnowledge, type MotionModel } from './motion-model.ts';
+import { type Steadiness, steadiness, strays } from './steadiness.ts';
+
+/** What was found about a window, with the numbers its sentence needs. Times in s, changes as fractions. */
+export type Finding =
+  | { readonly kind: 'steady' }
+  /** A decaying transient; `beatS` is the period of the swelling where it is seen to swell. */
+  | {
+      readonly kind: 'transient';
+      readonly atEnd: number;
+      readonly waitS: number;
+      readonly beatS: number | null;
+    }
+  /** Swelling and shrinking that does not die away. */
+  | { readonly kind: 'beat'; readonly swing: number; readonly beatS: number | null }
+  /** The amplitude rose (positive) or fell. */
+  | { readonly kind: 'trend'; readonly change: number }
+  /** The phase slid evenly: not settled, or the drive is not where it was set. */
+  | { readonly kind: 'slide'; readonly degrees: number; readonly measuredHz: number }
+  /** It changed in no simple way. */
+  | { readonly kind: 'wander'; readonly excursion: number };
+
+/** A window of a motion, judged. */
+export interface WindowJudgement {
+  readonly windowS: readonly [number, number];
+  readonly finding: Finding;
+  readonly model: MotionModel;
+  readonly leftover: Measured;
+  readonly leftoverEffect: number | null;
+  readonly change: Measured;
+}
+
+/** Leftover told as steady without a remark, and the most that is still called steady. */
+export const LEFTOVER_AIM = 0.01;
+export const LEFTOVER_LIMIT = 0.02;
+
+// Change of amplitude over a window that is called drifting, beyond its noise.
+const CHANGE_LIMIT = 0.005;
+// Wandering of the block amplitudes that is called unsteady, beyond its noise.
+const STRAY_LIMIT = 0.02;
+// Exciter and camera keep time to about this; a frequency difference below it is nobody's fault.
+const CLOCK_TOLERANCE = 2e-4;
+// Below this many periods a slowly decaying transient (damping ratio 0.004 and more) can look like an even phase slide.
+const PERIODS_TO_TELL_A_SLIDE = 20;
+// A slide larger than this is more than a leftover could feign.
+const SLIDE_OF_A_LEFTOVER_RAD = 0.15;
+
+/** Leftover at a time of the joint fit's record, as a fraction of the steady amplitude. */
+export function leftoverAt(joint: JointFit, timeS: number): number {
+  return joint.leftover * Math.exp(-joint.decayRatePerS * (timeS - joint.originS));
+}
+
+/**
+ * Largest share by which a leftover can move the amplitude of a steady fit over a window: its mean in the frame
+ * that turns with the drive.
+ */
+export function effectOn(joint: JointFit, windowS: readonly [number, number], frequencyHz: number): number {
+  const span = windowS[1] - windowS[0];
+  const turn = Math.hypot(joint.decayRatePerS, 2 * Math.PI * (joint.dampedHz - frequencyHz)) * span;
+  return leftoverAt(joint, windowS[0]) * (turn > 2 ? 2 / turn : 1);
+}
+
+function beatPeriodS(joint: JointFit): number | null {
+  const beatHz = Math.abs(joint.dampedHz - joint.frequencyHz);
+  const seen = beatHz * (joint.endS - joint.originS) >= 1;
+  return seen ? 1 / beatHz : null;
+}
+
+/** Largest departure of steady plus transient from their mean, in the frame that turns with the drive. */
+function excursionOf(joint: JointFit): number {
+  const span = joint.endS - joint.originS;
+  const turn = 2 * Math.PI * (joint.dampedHz - joint.frequencyHz);
+  const points = Array.from({ length: 41 }, (_, k) => {
+    const elapsed = (k / 40) * span;
+    const size = joint.leftover * Math.exp(-joint.decayRatePerS * elapsed);
+    return [size * Math.cos(turn * elapsed), size * Math.sin(turn * elapsed)] as const;
+  });
+  const mean = [0, 1].map((axis) => points.reduce((sum, point) => sum + point[axis as 0 | 1] / 41, 0));
+  return Math.max(...points.map(([x, y]) => Math.hypot(x - mean[0]!, y - mean[1]!)));
+}
+
+function transientFinding(joint: JointFit): Finding {
+  const beatS = beatPeriodS(joint);
+  const dies =
+    joint.decayRatePerS > 2 * joint.decayRateU && joint.decayRatePerS * (joint.endS - joint.originS) > 0.3;
+  if (!dies) {
+    const swing = excursionOf(joint);
+    return beatS !== null ? { kind: 'beat', swing, beatS } : { kind: 'trend', change: trendOf(joint) };
+  }
+  const waitS = Math.max(0, Math.log(joint.leftoverAtEnd / LEFTOVER_AIM) / joint.decayRatePerS);
+  // swelling is what is seen where a beat comes back to more than half
+  const swells = beatS !== null && joint.decayRatePerS * beatS < Math.LN2;
+  return { kind: 'transient', atEnd: joint.leftoverAtEnd, waitS, beatS: swells ? beatS : null };
+}
+
+/** Change of the amplitude from the joint fit's first to its last moment. */
+function trendOf(joint: JointFit): number {
+  const at = (timeS: number) => {
+    const size = leftoverAt(joint, timeS);
+    const drive = 2 * Math.PI * joint.frequencyHz * (timeS - joint.referenceTimeS) + joint.phaseRad;
+    const free = 2 * Math.PI * joint.dampedHz * (timeS - joint.originS) + joint.transientPhaseRad;
+    return Math.hypot(1 + size * Math.cos(free - drive), size * Math.sin(free - drive));
+  };
+  const [first, last] = [at(joint.originS), at(joint.endS)];
+  return (2 * (last - first)) / (first + last);
+}
+
+/** What the blocks say where no transient is demanded. */
+function blockFinding(blocks: Steadiness | null): Finding | null {
+  if (blocks === null) return null;
+  if (strays(blocks, STRAY_LIMIT)) {
+    if (blocks.signChanges >= 3) return { kind: 'beat', swing: blocks.excursion, beatS: null };
+    const mostly = Math.abs(blocks.change) > blocks.excursion;
+    return mostly
+      ? { kind: 'trend', change: blocks.change }
+      : { kind: 'wander', excursion: blocks.excursion };
+  }
+  const changed = Math.abs(blocks.change) > CHANGE_LIMIT + 4 * blocks.changeU;
+  return changed ? { kind: 'trend', change: blocks.change } : null;
+}
+
+/** A measured frequency that a short record cannot tell from a transient in quadrature. */
+function slideFinding(samples: Samples, model: MotionModel, driveHz: number): Finding | null {
+  const off = model.frequencyHz - driveHz;
+  const slideRad = 2 * Math.PI * Math.abs(off) * spanS(samples);
+  const short = durationS(samples) * driveHz < PERIODS_TO_TELL_A_SLIDE;
+  const ambiguous = Math.abs(off) > CLOCK_TOLERANCE * driveHz && slideRad < SLIDE_OF_A_LEFTOVER_RAD;
+  return short && ambiguous
+    ? { kind: 'slide', degrees: (slideRad * 180) / Math.PI, measuredHz: model.frequencyHz }
+    : null;
+}
+
+/**
+ * Judges the samples of one window as a whole.
+ *
+ * @param samples harmonics and foreign tones already taken out
+ * @param model of these samples, where the caller has it
+ * @returns null where no sine can be fitted
+ */
+export function judgeWindow(
+  samples: Samples,
+  driveHz: number,
+  knowledge: FrequencyKnowledge,
+  model: MotionModel | null = chooseModel(samples, driveHz, knowledge),
+): WindowJudgement | null {
+  if (model === null) return null;
+  const windowS = [samples.timesS[0]!, samples.timesS[samples.timesS.length - 1]!] as const;
+  const { joint, steady } = model;
+  const blocks = steadiness(
+    samples,
+    model.frequencyHz,
+    joint?.conditioned ? joint.amplitude : steady.amplitude,
+  );
+  const change = measured(blocks?.change ?? null, blocks?.changeU ?? null);
+  const told = (finding: Finding, leftover: Measured, leftoverEffect: number | null): WindowJudgement => ({
+    windowS,
+    finding,
+    model,
+    leftover,
+    leftoverEffect,
+    change,
+  });
+
+  if (joint === null) {
+    // nothing found: what a transient of the size of the noise would be
+    const none = measured(0, (2 * steady.amplitudeU) / steady.amplitude);
+    const slide =
+      model.frequencyMeasured && knowledge === 'set' ? slideFinding(samples, model, driveHz) : null;
+    return told(blockFinding(blocks) ?? slide ?? { kind: 'steady' }, none, 0);
+  }
+  if (!model.adequate) {
+    const excursion = Math.max(blocks?.excursion ?? 0, LEFTOVER_LIMIT);
+    const finding: Finding =
+      blocks !== null && blocks.signChanges >= 3
+        ? { kind: 'beat', swing: excursion, beatS: null }
+        : { kind: 'wander', excursion };
+    return told(finding, measured(null), null);
+  }
+  if (joint.conditioned) {
+    const leftover = measured(joint.leftover, joint.leftoverU);
+    const steadyEnough = joint.leftover + 2 * joint.leftoverU <= LEFTOVER_LIMIT;
+    const finding: Finding = steadyEnough ? { kind: 'steady' } : transientFinding(joint);
+    return told(finding, leftover, effectOn(joint, windowS, model.frequencyHz));
+  }
+  // steady and transient cannot be told apart, but how much they move can
+  const excursion = excursionOf(joint);
+  if (excursion <= CHANGE_LIMIT) return told({ kind: 'steady' }, measured(null), excursion);
+  return told(transientFinding(joint), measured(null), null);
+}
