@@ -8,7 +8,7 @@ export interface ProfileInterval {
 }
 
 // Where the sum has risen to this share of what is asked, the bound is known well enough.
-const RISE_ACCURACY = 1e-3;
+const RISE_ACCURACY = 1e-4;
 const EXPANSIONS = 12;
 const REFINEMENTS = 12;
 const QUICK = {

@@ -9,7 +9,7 @@ import os
 
 import numpy as np
 import scipy
-from scipy.optimize import curve_fit
+from scipy.optimize import brentq, curve_fit, least_squares
 
 
 def response(kind, f, gain, fn, damping):
@@ -31,6 +31,28 @@ SETS = [
 ]
 
 
+def profile_bounds(residuals, best, cov, rise):
+    """Values of each parameter at which chi2, minimised over the others, has risen by `rise`: Brent's root search."""
+    lowest = np.sum(residuals(best) ** 2)
+    bounds = []
+    for j in range(len(best)):
+        others = [i for i in range(len(best)) if i != j]
+
+        def excess(value):
+            def held(q):
+                p = np.array(best)
+                p[j] = value
+                p[others] = q
+                return residuals(p)
+            start = best[others] + cov[others, j] / cov[j, j] * (value - best[j])
+            found = least_squares(held, start, x_scale=np.abs(best[others]), xtol=1e-14, ftol=1e-14, gtol=1e-14)
+            return 2 * found.cost - lowest - rise
+        reach = np.sqrt(rise * cov[j, j])
+        bounds.append([brentq(excess, best[j] + side * 0.3 * reach, best[j] + side * 2 * reach, xtol=1e-12 * abs(best[j]))
+                       for side in (-1, 1)])
+    return bounds
+
+
 def main():
     rng = np.random.default_rng(730)
     out = []
@@ -50,12 +72,14 @@ def main():
             y, u = np.concatenate([amp, lag]), np.concatenate([u_amp, u_lag])
         best, cov = curve_fit(model, np.zeros(len(y)), y, p0=np.array(truth) * [1.02, 1.0003, 0.97], sigma=u,
                               absolute_sigma=absolute, xtol=1e-14, ftol=1e-14, gtol=1e-14, maxfev=20000)
-        chi2 = float(np.sum(((model(None, *best) - y) / u) ** 2))
+        residuals = lambda p: (model(None, *p) - y) / u
+        chi2 = float(np.sum(residuals(best) ** 2))
+        bounds = profile_bounds(residuals, best, cov, 1.959963984540054**2) if absolute else None
         out.append({
             "name": name, "excitation": kind[0], "damping": kind[1], "mode": mode, "absolute_sigma": absolute,
             "truth": list(truth), "driveHz": f.tolist(), "amplitude": amp.tolist(), "u_amplitude": u_amp.tolist(),
             "lag_rad": lag.tolist() if mode == "complex" else None, "u_lag_rad": u_lag.tolist() if mode == "complex" else None,
-            "fit": {"parameters": best.tolist(), "covariance": cov.tolist(), "chi2": chi2},
+            "fit": {"parameters": best.tolist(), "covariance": cov.tolist(), "chi2": chi2, "profile_95": bounds},
         })
     here = os.path.dirname(os.path.abspath(__file__))
     with open(os.path.join(here, "resonance_scipy.json"), "w") as file:

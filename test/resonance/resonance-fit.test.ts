@@ -75,7 +75,12 @@ interface ScipySet {
   readonly u_amplitude: number[];
   readonly lag_rad: number[] | null;
   readonly u_lag_rad: number[] | null;
-  readonly fit: { readonly parameters: number[]; readonly covariance: number[][]; readonly chi2: number };
+  readonly fit: {
+    readonly parameters: number[];
+    readonly covariance: number[][];
+    readonly chi2: number;
+    readonly profile_95: [number, number][] | null;
+  };
 }
 
 describe('scipy.optimize.curve_fit (make_resonance_scipy.py): values and covariance, started by ourselves', () => {
@@ -99,6 +104,14 @@ describe('scipy.optimize.curve_fit (make_resonance_scipy.py): values and covaria
       expect(relative(fit.parameters[j]!.u, Math.sqrt(set.fit.covariance[j]![j]!))).toBeLessThan(1e-4);
     });
     expect(relative(fit.chi2, set.fit.chi2)).toBeLessThan(1e-8);
+    // profile bounds (scipy: brentq over least_squares) to a thousandth of the standard uncertainty
+    const { staticGain, naturalHz, damping } = fit.intervals;
+    set.fit.profile_95?.forEach(([lower, upper], j) => {
+      const found = [staticGain, naturalHz, damping][j]!;
+      const accuracy = 1e-3 * fit.parameters[j]!.u!;
+      expect(Math.abs(found.lower! - lower)).toBeLessThan(accuracy);
+      expect(Math.abs(found.upper! - upper)).toBeLessThan(accuracy);
+    });
   });
 });
 
