@@ -9,15 +9,16 @@ import type { Template } from './template.ts';
 /** How a marker may change between frames: only move, or also turn, stretch and shear. */
 export type MotionModel = 'translation' | 'affine';
 
-// A soft texture hides a turn from the score: 2 degrees cost it 0.006, and move a 41 px patch by 0.15 px. So every eighth
+// A soft texture hides a turn from the score: 2 degrees cost it 0.006, and move a 41 px patch by 0.15 px. So every twelfth
 // frame is registered with the affine warp as well, at the start and after one that showed a turn every frame.
-const PROBE_EVERY = 8;
+const PROBE_EVERY = 12;
 const ALERT_FRAMES = 8;
-const ALERT_AT_START = 24;
+const ALERT_AT_START = 16;
 // This many frames that showed a turn settle the matter.
 const TURNS_TO_SWITCH = 3;
-// Deformation that moves the patch's corners by less than this is no more than noise or compression, px.
-const LEAST_CORNER_PX = 0.15;
+// Deformation that moves the patch's corners by less than this is no more than noise or compression, px. Strong
+// compression wobbles soft textures by as much; the affine warp then costs a tenth of precision and does no harm.
+const LEAST_CORNER_PX = 0.25;
 // Four more parameters lower the residual a little even without a turn: an F statistic of 1, of 4 once in 300 frames.
 // Compression errors are not white, hence the distance.
 const LEAST_F = 20;

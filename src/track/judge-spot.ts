@@ -6,10 +6,14 @@ import { type PatchTexture, patchTexture } from './patch-texture.ts';
 import { listFits } from './search-image.ts';
 import type { Alias, SpotJudgement, Template } from './template.ts';
 
-/** Sizes tried where none is given; smaller ones are too easily mistaken, larger ones seldom fit on the part. */
-const SIZES_PX = [25, 31, 41, 51, 61, 81, 101, 121] as const;
+// Sizes tried where none is given; smaller ones are too easily mistaken, larger ones seldom fit on the part.
+const SIZES_PX = [31, 41, 51, 61, 81, 101, 121] as const;
+// Tried where none of them fits between the spot and the edge of the picture.
+const SIZE_AT_EDGE_PX = 21;
 const SMALLEST_PX = 15;
 const LARGEST_PX = 121;
+// Compressed video has little noise left, but errors that move it as noise of some DN would; sizes are chosen for that.
+const LEAST_NOISE_TO_CHOOSE_BY_DN = 2;
 // Compression leaves errors of 0.01 to 0.03 px whatever the patch: a patch larger than for 0.01 px gains nothing.
 // Large patches reach beyond the part sooner, so they are taken only for the sake of a greater need.
 const AIMS = [
@@ -69,9 +73,12 @@ export function chooseTemplate(
     throw new Error(`a patch is an odd number of pixels from ${SMALLEST_PX} to ${LARGEST_PX}, not ${given}`);
   }
   const noiseDn = imageNoiseDn(image, noiseArea(x, y));
-  const fitting = (given === undefined ? SIZES_PX : [given]).filter((size) => fits(image, x, y, size));
+  const wanted = given === undefined ? SIZES_PX : [given];
+  let fitting: readonly number[] = wanted.filter((size) => fits(image, x, y, size));
+  if (fitting.length === 0 && given === undefined && fits(image, x, y, SIZE_AT_EDGE_PX))
+    fitting = [SIZE_AT_EDGE_PX];
   if (fitting.length === 0) {
-    const sizePx = given ?? SIZES_PX[0];
+    const sizePx = given ?? SIZE_AT_EDGE_PX;
     return {
       judgement: { ...NOTHING_KNOWN, sizePx, noiseDn, reason: edgeReason(image, x, y, sizePx) },
       template: null,
@@ -142,12 +149,13 @@ interface Candidate {
 /** The smallest template that reaches the most ambitious aim that any reaches; the largest where none does. */
 function smallestGoodEnough(templates: readonly Template[]): Candidate {
   const candidates = templates.map((template) => ({ template, texture: patchTexture(template) }));
+  const share = Math.max(1, LEAST_NOISE_TO_CHOOSE_BY_DN / templates[0]!.noiseDn);
   for (const aim of AIMS) {
     const reached = candidates.find(
       ({ template, texture }) =>
         template.widthPx <= aim.largestPx &&
         texture.worstUPx !== null &&
-        texture.worstUPx <= aim.uPx &&
+        share * texture.worstUPx <= aim.uPx &&
         texture.contrastDn >= LEAST_CONTRAST_DN,
     );
     if (reached) return reached;

@@ -59,9 +59,11 @@ export class Predictor {
   largestStepPx(): number {
     let largest = 0;
     for (let i = 1; i < this.count; i++) {
-      largest = Math.max(largest, Math.hypot(this.x[i]! - this.x[i - 1]!, this.y[i]! - this.y[i - 1]!));
+      const dx = this.x[i]! - this.x[i - 1]!;
+      const dy = this.y[i]! - this.y[i - 1]!;
+      largest = Math.max(largest, dx * dx + dy * dy);
     }
-    return largest;
+    return Math.sqrt(largest);
   }
 
   /** Where the marker should be at `timeS`, px; null when nothing is remembered. */
