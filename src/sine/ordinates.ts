@@ -33,10 +33,11 @@ class Carrier {
   constructor(timesS: Float64Array, startHz: number, stepHz: number) {
     const middleS = (timesS[0]! + timesS[timesS.length - 1]!) / 2;
     const turns = (hz: number) => timesS.map((time) => 2 * Math.PI * hz * (time - middleS));
-    this.cos = turns(startHz).map(Math.cos);
-    this.sin = turns(startHz).map(Math.sin);
-    this.#stepCos = turns(stepHz).map(Math.cos);
-    this.#stepSin = turns(stepHz).map(Math.sin);
+    const [start, step] = [turns(startHz), turns(stepHz)];
+    this.cos = start.map(Math.cos);
+    this.sin = start.map(Math.sin);
+    this.#stepCos = step.map(Math.cos);
+    this.#stepSin = step.map(Math.sin);
   }
 
   advance(): void {

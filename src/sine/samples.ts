@@ -49,7 +49,8 @@ export function medianIntervalS({ timesS }: Samples): number {
   return intervals[intervals.length >> 1]!;
 }
 
-/** Time the samples stand for: their span and one frame interval more, in seconds. */
+/** Time the samples stand for: their span and one mean frame interval more, in seconds. */
 export function durationS(samples: Samples): number {
-  return spanS(samples) + medianIntervalS(samples);
+  const count = samples.timesS.length;
+  return count < 2 ? 0 : (spanS(samples) * count) / (count - 1);
 }
