@@ -169,12 +169,14 @@ export class Bench {
 
   async #open(path: string): Promise<void> {
     if (this.#session?.file.path === path) return;
+    let opened: TestSession | null = null;
     const session = await TestSession.open({
       path,
       onSave: (save) => {
-        if (this.#session === session) this.#patch({ save });
+        if (opened !== null && this.#session === opened) this.#patch({ save });
       },
     });
+    opened = session;
     await this.#close();
     this.#session = session;
     this.#patch({ ...EMPTY, file: session.file, ...this.#sessionState(session) });
