@@ -1,6 +1,6 @@
 import { type DisplayRotationDeg, rowTimes } from '../camera/rolling-shutter.ts';
 import { trackInMm } from '../scale/displacement.ts';
-import type { PointPx, PointTrack } from '../scale/point-track.ts';
+import { type PointPx, type PointTrack, seenCount } from '../scale/point-track.ts';
 import { type ClipTracks, type MarkerTrack, TRACK_STATE, type TrackRole } from './clip-tracks.ts';
 import type { SetupGeometry } from './setup-geometry.ts';
 
@@ -21,6 +21,8 @@ export interface ClipMotion {
 export function markerOf(tracks: ClipTracks, role: TrackRole): MarkerTrack | null {
   return tracks.markers.find((marker) => marker.role === role && marker.error === null) ?? null;
 }
+
+const FEWEST_FRAMES = 2; // one picture shows no motion
 
 /** Positions of a marker with frames in which it was lost or doubtful as gaps, on times that hold for its own row. */
 function pointTrack(tracks: ClipTracks, marker: MarkerTrack, rowReadoutS: number): PointTrack {
@@ -67,23 +69,24 @@ export function clipMotion(
   const responseMarker = markerOf(tracks, 'response');
   if (!responseMarker) return null;
   const response = pointTrack(tracks, responseMarker, rowReadoutS);
-  if (!response.x.some(Number.isFinite)) return null;
+  if (seenCount(response) < FEWEST_FRAMES) return null;
   const driveMarker = markerOf(tracks, 'drive');
-  const drive = driveMarker ? pointTrack(tracks, driveMarker, rowReadoutS) : null;
+  const driveTrack = driveMarker ? pointTrack(tracks, driveMarker, rowReadoutS) : null;
+  const drive = driveTrack && seenCount(driveTrack) >= FEWEST_FRAMES ? driveTrack : null;
   const grounds = tracks.markers
     .filter((marker) => marker.role === 'ground' && marker.error === null)
     .map((marker) => pointTrack(tracks, marker, rowReadoutS))
-    .filter((track) => track.x.some(Number.isFinite));
+    .filter((track) => seenCount(track) >= FEWEST_FRAMES);
   const stillMarker = markerOf(tracks, 'still');
   const still = grounds[0] ?? (stillMarker ? pointTrack(tracks, stillMarker, rowReadoutS) : null);
   const inMm = (marker: PointTrack): PointTrack =>
     trackInMm({ marker, grounds, groundRestPx: null, toMm: geometry.toMm });
   return {
     response: inMm(response),
-    drive: drive?.x.some(Number.isFinite) ? inMm(drive) : null,
+    drive: drive ? inMm(drive) : null,
     still,
     groundSubtracted: grounds.length > 0,
     responseRestPx: rest(response),
-    driveRestPx: drive?.x.some(Number.isFinite) ? rest(drive) : null,
+    driveRestPx: drive ? rest(drive) : null,
   };
 }

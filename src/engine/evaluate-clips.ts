@@ -101,7 +101,7 @@ export function evaluateClips(test: TestFile, outcomes: ReadonlyMap<string, Clip
           failures.set(
             spec.id,
             outcome.markers.find((each) => each.error !== null)?.error ??
-              `The response marker was lost in every frame of clip "${spec.id}".`,
+              `The response marker was seen in fewer than two of the ${outcome.timesS.length} frames of clip "${spec.id}": film at least two periods with the marker in view.`,
           );
       } catch (error) {
         if (!(error instanceof InputError)) throw error;
