@@ -5,7 +5,7 @@ import type { PlanSetting } from './plan-points.ts';
 /** The task of choosing drive frequencies. */
 export interface FrequencyChoice {
   readonly setting: PlanSetting;
-  /** Equally likely oscillators over which the goodness is averaged; one where it is known. */
+  /** Equally likely oscillators over which the uncertainty is averaged; one where it is known. */
   readonly oscillators: readonly Oscillator[];
   /** Information already held about each oscillator in their order, see `noInformation`. */
   readonly held: readonly Float64Array[];
@@ -20,16 +20,23 @@ export interface FrequencyChoice {
 const CELLS = INFORMATION_SIZE ** 2;
 const EXCHANGE_ROUNDS = 8;
 
-/** Mean goodness over the oscillators of what is held plus dwells at the frequencies. */
-export function meanGoodness(choice: FrequencyChoice, frequencies: readonly number[]): number {
+// Half the goodness per wanted parameter is minus the logarithm of its uncertainty; with two wanted, a quarter.
+const UNCERTAINTY_POWER = 0.25;
+
+/** Goodness of the mean uncertainty: it shuns frequencies that would leave some of the oscillators undetermined. */
+const ofMeanUncertainty = (sum: number, oscillators: number) =>
+  -Math.log(sum / oscillators) / UNCERTAINTY_POWER;
+
+/** Goodness, over all oscillators, of what is held plus dwells at the frequencies. */
+export function goodnessOver(choice: FrequencyChoice, frequencies: readonly number[]): number {
   const total = new Float64Array(CELLS);
   let sum = 0;
   for (let k = 0; k < choice.oscillators.length; k++) {
     total.set(choice.held[k]!);
     for (const driveHz of frequencies) addDwell(total, choice.setting, choice.oscillators[k]!, driveHz);
-    sum += designGoodness(total, choice.goal);
+    sum += Math.exp(-UNCERTAINTY_POWER * designGoodness(total, choice.goal));
   }
-  return sum / choice.oscillators.length;
+  return ofMeanUncertainty(sum, choice.oscillators.length);
 }
 
 /**
@@ -37,8 +44,8 @@ export function meanGoodness(choice: FrequencyChoice, frequencies: readonly numb
  * better candidate until none is found.
  *
  * @returns `count` frequencies, ascending; fewer where spacing leaves no more candidates
- * Source: exchange algorithm, V. V. Fedorov, Theory of Optimal Experiments (1972) (from memory), on the mean
- * logarithm of the determinant (Bayesian D-optimality, Chaloner and Verdinelli, Statist. Sci. 10 (1995) 273).
+ * Source: exchange algorithm, V. V. Fedorov, Theory of Optimal Experiments (1972) (from memory), averaged
+ * over what is possible (Bayesian design; Chaloner and Verdinelli, Statist. Sci. 10 (1995) 273, from memory).
  */
 export function chooseFrequencies(choice: FrequencyChoice): number[] {
   const { oscillators, candidates, count, leastSpacingHz } = choice;
@@ -67,9 +74,9 @@ export function chooseFrequencies(choice: FrequencyChoice): number[] {
     for (let k = 0; k < people; k++) {
       const from = (c * people + k) * CELLS;
       for (let i = 0; i < CELLS; i++) trial[i] = held[k * CELLS + i]! + told[from + i]!;
-      sum += designGoodness(trial, choice.goal);
+      sum += Math.exp(-UNCERTAINTY_POWER * designGoodness(trial, choice.goal));
     }
-    return sum / people;
+    return ofMeanUncertainty(sum, people);
   };
   const allowed = (c: number) =>
     leastSpacingHz === 0 ||
@@ -127,7 +134,7 @@ export function refineFrequencies(
   for (let round = 0; round < rounds; round++) {
     for (let slot = 0; slot < frequencies.length; slot++) {
       const here = frequencies[slot]!;
-      const goodness = (driveHz: number) => meanGoodness(choice, frequencies.with(slot, driveHz));
+      const goodness = (driveHz: number) => goodnessOver(choice, frequencies.with(slot, driveHz));
       let low = Math.max(here - reach, (frequencies[slot - 1] ?? -Infinity) + choice.leastSpacingHz, lowHz);
       let high = Math.min(here + reach, (frequencies[slot + 1] ?? Infinity) - choice.leastSpacingHz, highHz);
       if (!(high > low)) continue;
