@@ -2,6 +2,10 @@ import type { ClipInfo } from './clip-info.ts';
 import { lumaAccess } from './pixel-format.ts';
 import type { InputListing } from './stream-listing.ts';
 
+/** The frames may end this much before the file's stated end, s and as a fraction of it: sound often runs longer. */
+const EARLY_END_S = 0.25;
+const EARLY_END_FRACTION = 0.1;
+
 /** Sentences on what the user should know of a clip before trusting a measurement from it. */
 export function clipWarnings(
   clip: Omit<ClipInfo, 'warnings'>,
@@ -20,7 +24,7 @@ export function clipWarnings(
   }
   if (clip.gaps.length > 0) warnings.push(gapSentence(clip));
   if (clip.duplicates.length > 0) {
-    warnings.push(`${count(clip.duplicates.length, 'frame')} carry the same time as the frame before.`);
+    warnings.push(`Frames with the same time as the frame before: ${clip.duplicates.length}.`);
   }
   if (clip.colour.hdr !== null) {
     warnings.push(
@@ -42,11 +46,15 @@ export function clipWarnings(
   if (listing.videoStreams > 1) {
     warnings.push(`The file holds ${listing.videoStreams} video streams; the first is measured.`);
   }
-  const damage = complaints.find((line) =>
-    /partial file|truncat|corrupt|invalid|error|premature|missing|ended/i.test(line),
-  );
-  if (damage !== undefined) {
-    warnings.push(`The file is damaged or cut off ("${damage.trim()}"); frames may be missing.`);
+  const damage = complaints.find((line) => /partial file|truncat|corrupt|premature|invalid/i.test(line));
+  const statedS = listing.durationS ?? 0;
+  const endsEarly = statedS - clip.durationS > Math.max(EARLY_END_S, EARLY_END_FRACTION * statedS);
+  if (damage !== undefined || endsEarly) {
+    const said = damage === undefined ? '' : ` ("${damage.trim()}")`;
+    const ends = endsEarly
+      ? `, its pictures end at ${clip.durationS.toFixed(2)} of ${statedS.toFixed(2)} s`
+      : '';
+    warnings.push(`The file is damaged or cut off${said}${ends}; copy it anew from the camera if you can.`);
   }
   return warnings;
 }

@@ -22,6 +22,8 @@ export interface FfmpegCandidate {
   readonly path: string | null;
 }
 
+/** No ffmpeg says more about itself, characters; what does is not ffmpeg. */
+const LONGEST_VERSION_TEXT = 65_536;
 /** Asking for the version takes milliseconds; a program that takes longer than this is not ffmpeg, s. */
 const VERSION_STALL_S = 10;
 
@@ -81,7 +83,7 @@ async function askVersion(path: string, origin: FfmpegOrigin): Promise<Ffmpeg | 
     stallS: VERSION_STALL_S,
     onOutput: (chunk) => {
       text += chunk.toString('utf8');
-      return text.length < 65_536;
+      return text.length < LONGEST_VERSION_TEXT;
     },
   });
   if (result.reason !== 'finished') return result.lastLines.at(-1) ?? `it ${result.reason}`;

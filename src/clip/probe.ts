@@ -6,7 +6,13 @@ import { clipWarnings } from './clip-warnings.ts';
 import { displayedSize } from './coordinates.ts';
 import { type Orientation, orientationOfAngle, readOrientation } from './display-matrix.ts';
 import { type Ffmpeg, findFfmpeg } from './find-ffmpeg.ts';
-import { type FrameList, type ListingPass, listDecodedFrames, listPackets } from './frame-list.ts';
+import {
+  type FrameList,
+  type ListedClip,
+  type ListingPass,
+  listDecodedFrames,
+  listPackets,
+} from './frame-list.ts';
 import { frameTiming } from './frame-timing.ts';
 import { lumaAccess } from './pixel-format.ts';
 import type { RunOptions } from './run-ffmpeg.ts';
@@ -58,7 +64,7 @@ export async function probeClip(path: string, options: ProbeOptions = {}): Promi
   const packets = await listPackets(clip, ffmpeg, run);
   if (packets.result.reason === 'cancelled') throw new CancelledError();
   const listing = readListing(packets.lines);
-  const video = usableVideo(clip.path, listing, packets);
+  const video = usableVideo(clip, listing, packets);
   const list = await framesOf(clip, ffmpeg, run, video, packets);
   const orientation = await orientationOf(clip.path, video);
 
@@ -94,13 +100,19 @@ export async function probeClip(path: string, options: ProbeOptions = {}): Promi
 }
 
 /** The video stream, or an InputError saying why there is none to use. */
-function usableVideo(path: string, listing: InputListing, pass: ListingPass): StreamListing {
+function usableVideo(
+  { path, container }: ListedClip,
+  listing: InputListing,
+  pass: ListingPass,
+): StreamListing {
   const name = clipName(path);
   const { video } = listing;
   if (video === null) {
-    if (pass.lines.some((line) => /moov atom not found/.test(line))) {
+    const says = (phrase: RegExp): boolean => pass.lines.some((line) => phrase.test(line));
+    const noStreams = listing.videoStreams + listing.audioStreams === 0 && says(/matches no streams/);
+    if (says(/moov atom not found/) || (noStreams && container === 'mov')) {
       throw new InputError(
-        `${name}: the index of the clip is missing, the recording or a copy of it was cut off; copy it anew from the camera.`,
+        `${name}: the index of the clip is missing or broken, as when a recording or a copy is cut off; copy it anew from the camera.`,
       );
     }
     if (listing.videoStreams > 0) {
@@ -126,7 +138,7 @@ function usableVideo(path: string, listing: InputListing, pass: ListingPass): St
 
 /** The displayed frames: from the packets where they are certain, from a decoding pass otherwise. */
 async function framesOf(
-  clip: Parameters<typeof listPackets>[0],
+  clip: ListedClip,
   ffmpeg: Ffmpeg,
   run: RunOptions,
   video: StreamListing,

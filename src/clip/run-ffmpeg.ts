@@ -79,6 +79,12 @@ export async function runFfmpeg(
     if (cause !== null) return; // the first reason counts, and asking once is enough
     cause = why;
     stopProcess(child);
+    if (child.exitCode !== null || child.signalCode !== null) letGo();
+  };
+  // A process of its own that an ended program left behind may hold the pipes open: do not wait for it.
+  const letGo = (): void => {
+    child.stdout.destroy();
+    child.stderr.destroy();
   };
   const cancel = (): void => stop('cancelled');
   options.signal?.addEventListener('abort', cancel, { once: true });
@@ -100,11 +106,8 @@ export async function runFfmpeg(
     watchdog.alive();
     stderr.push(chunk);
   });
-  // A process of its own that an ended program left behind may hold the pipes open: do not wait for it.
   child.once('exit', () => {
-    if (cause === null) return;
-    child.stdout.destroy();
-    child.stderr.destroy();
+    if (cause !== null) letGo();
   });
 
   const result = await new Promise<FfmpegResult>((resolve) => {

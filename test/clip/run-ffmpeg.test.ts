@@ -71,7 +71,7 @@ describe('one result shape for every end', () => {
 });
 
 describe('the receiver of the output', () => {
-  test('stops the run by returning false', async () => {
+  test('stops the run by saying that it has enough', async () => {
     const result = await runFfmpeg(fakeFfmpeg('refuses-to-stop'), [], { onOutput: () => false });
     expect(result.reason).toBe('stopped');
   });
