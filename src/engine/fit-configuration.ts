@@ -1,9 +1,12 @@
 import { measured, NOT_MEASURED } from '../numeric/measured.ts';
+import type { FrequencyAtAmplitude } from '../resonance/amplitude-frequency.ts';
+import type { ResonanceFitOptions } from '../resonance/fit-options.ts';
 import { fitResonance } from '../resonance/resonance-fit.ts';
 import type { ResonanceFit } from '../resonance/resonance-fit-types.ts';
 import type { ResonancePoint } from '../resonance/resonance-points.ts';
 import type { Configuration } from '../testfile/schema.ts';
-import type { DwellResult, Interval, ResonanceResult } from './results.ts';
+import type { DwellResult, Interval, ResonanceResult, SecondOpinions } from './results.ts';
+import { secondOpinions } from './second-opinions.ts';
 
 const DRIVE_IN_VIEW = new Set(['spring-end', 'base', 'base-relative']); // the drive marker shows the input itself
 
@@ -63,7 +66,11 @@ function halved(of: Interval | null): Interval | null {
 const QUANTITY = { amplitude: 'amplitude', lag: 'lag', complex: 'amplitude and lag' } as const;
 
 /** A fit in the words of the results. */
-export function resonanceResult(configuration: Configuration, fit: ResonanceFit): ResonanceResult {
+export function resonanceResult(
+  configuration: Configuration,
+  fit: ResonanceFit,
+  opinions: SecondOpinions | null,
+): ResonanceResult {
   const { quantities: q } = fit;
   const damping = interval(fit.intervals.damping);
   const structural = configuration.damping === 'structural';
@@ -100,6 +107,7 @@ export function resonanceResult(configuration: Configuration, fit: ResonanceFit)
     chi2: fit.chi2,
     dof: fit.dof,
     aicc: fit.aicc,
+    opinions,
     fitted: fit.points.map((point) => ({
       dwell: point.name,
       driveHz: point.driveHz,
@@ -119,20 +127,37 @@ export function resonanceResult(configuration: Configuration, fit: ResonanceFit)
   };
 }
 
-/** Fits the resonance of one configuration from its dwells; what is missing for a fit stands in `error`. */
+const MODE = { amplitude: 'amplitude', lag: 'lag', 'amplitude and lag': 'complex' } as const;
+
+/** The fit options that a configuration of the test file asks for. */
+export function fitOptions(configuration: Configuration, given: FitPoints): ResonanceFitOptions {
+  const { fit = {}, movingMass, movingMassU } = configuration;
+  return {
+    excitation: configuration.excitation,
+    damping: configuration.damping ?? 'viscous',
+    amplitudeUnit: given.unit,
+    commonRelativeU: given.commonRelativeU,
+    ...(fit.quantity ? { mode: MODE[fit.quantity] } : {}),
+    rigidOffset: fit.rigidOffset ?? false,
+    slowResidual: fit.slowResidual ?? false,
+    robust: fit.robust ?? false,
+    ...(movingMass === undefined ? {} : { movingMassKg: { value: movingMass, u: movingMassU ?? null } }),
+  };
+}
+
+/**
+ * Fits the resonance of one configuration from its dwells; what is missing for a fit stands in `error`.
+ * @param levels natural frequencies known at other amplitudes, from ring-downs
+ */
 export function fitConfiguration(
   configuration: Configuration,
   dwells: readonly DwellResult[],
+  levels: readonly FrequencyAtAmplitude[] = [],
 ): ResonanceResult {
-  const { points, unit, commonRelativeU } = fitPoints(configuration, dwells);
-  const fit = fitResonance(points, {
-    excitation: configuration.excitation,
-    damping: configuration.damping ?? 'viscous',
-    amplitudeUnit: unit,
-    commonRelativeU,
-    ...(configuration.movingMass === undefined
-      ? {}
-      : { movingMassKg: { value: configuration.movingMass, u: configuration.movingMassU ?? null } }),
-  });
-  return resonanceResult(configuration, fit);
+  const given = fitPoints(configuration, dwells);
+  const options = fitOptions(configuration, given);
+  const fit = fitResonance(given.points, options);
+  const opinions =
+    fit.missing === null ? secondOpinions(configuration, given.points, fit, options, levels) : null;
+  return resonanceResult(configuration, fit, opinions);
 }

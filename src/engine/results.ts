@@ -135,11 +135,49 @@ export interface ResonanceResult {
   readonly chi2: number | null;
   readonly dof: number | null;
   readonly aicc: number | null;
+  readonly opinions: SecondOpinions | null;
   /** Each dwell beside the curve. */
   readonly fitted: readonly FittedDwell[];
   readonly notes: readonly string[];
   readonly warnings: readonly string[];
   readonly error: string | null;
+}
+
+/** What other readings of the same dwells say beside the fit; each sentence is for the engineer. */
+export interface SecondOpinions {
+  /** From the circle plot; null where no lag is known. */
+  readonly circle: {
+    readonly naturalHz: Measured;
+    readonly dampingRatio: Measured;
+    /** True where it differs from the fit beyond uncertainty; null where that cannot be told. */
+    readonly disagrees: boolean | null;
+    readonly sentence: string;
+  } | null;
+  /** Read off the dwells by interpolation. */
+  readonly halfPower: {
+    readonly peakHz: Measured;
+    readonly lowerHz: Measured;
+    readonly upperHz: Measured;
+    readonly bandwidthHz: Measured;
+    readonly naturalHz: Measured;
+    readonly dampingRatio: Measured;
+    /** What is missing; null where all was read. */
+    readonly missing: string | null;
+  };
+  /** Other models of the same dwells, ranked by the corrected Akaike criterion. */
+  readonly models: {
+    readonly sentence: string;
+    readonly ranking: readonly {
+      readonly model: string;
+      readonly delta: number | null;
+      readonly weight: number | null;
+    }[];
+  };
+  readonly nonlinearity: { readonly noticed: boolean | null; readonly sentences: readonly string[] };
+  /** Velocity and acceleration at the peak; not measured where the fit is in gain. */
+  readonly peakVelocityMmPerS: Measured;
+  readonly peakAccelerationMPerS2: Measured;
+  readonly peakAccelerationG: Measured;
 }
 
 /** Lower and upper ends, or null where there is no interval. */

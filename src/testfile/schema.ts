@@ -106,6 +106,8 @@ const dwell = z.looseObject({
   window: window.optional(),
   /** Why the dwell is left out of the fit; it is measured and shown all the same. */
   excluded: z.string().optional(),
+  /** Whether the dwell was reached by stepping the frequency up or down; tells a bent resonance from a straight one. */
+  direction: z.enum(['up', 'down']).optional(),
   typed: typed.optional(),
   measured: measuredBefore.optional(),
 });
@@ -138,6 +140,18 @@ const configuration = z.looseObject({
   travelLimit: z.number().positive().optional(),
   /** The number varied across configurations. */
   setting: z.number().optional(),
+  /** How the resonance is fitted; what is absent is chosen from the data. */
+  fit: z
+    .looseObject({
+      quantity: z.enum(['amplitude', 'lag', 'amplitude and lag']).optional(),
+      /** Crosstalk: a rigid motion seen with the part's own. */
+      rigidOffset: z.boolean().optional(),
+      /** What other modes leave in the band. */
+      slowResidual: z.boolean().optional(),
+      /** Play down outlying dwells (Huber). */
+      robust: z.boolean().optional(),
+    })
+    .optional(),
   dwells: z.array(dwell).default([]),
   sweeps: z.array(sweep).default([]),
   ringdowns: z.array(ringdown).default([]),
