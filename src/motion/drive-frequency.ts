@@ -1,7 +1,10 @@
 import { fitSine } from '../sine/four-parameter.ts';
-import { presentSamples, type Samples, spanS } from '../sine/samples.ts';
+import { strongestToneHz } from '../sine/interpolated-dft.ts';
+import { durationS, medianIntervalS, presentSamples, type Samples, spanS } from '../sine/samples.ts';
+import { fitSineAtFrequency } from '../sine/three-parameter.ts';
 import type { FrequencyKnowledge } from './motion-model.ts';
 import type { MotionRecord } from './motion-record.ts';
+import { unfoldedHz } from './transient-starts.ts';
 
 /** The frequency to judge a dwell at, and how it is known. */
 export interface DriveFrequency {
@@ -13,6 +16,8 @@ export interface DriveFrequency {
 // than clocks do.
 const SIGNIFICANT = 5;
 const CLOCK_TOLERANCE = 2e-4;
+// An exciter's dial may be this far off; what moves farther away is something else.
+const FARTHEST_CORRECTION = 0.1;
 
 /**
  * The drive frequency: as set where the drive's own motion bears it out or is not in view; as measured on the drive
@@ -39,13 +44,43 @@ export function driveFrequency(
       return { frequencyHz: differs ? fit.frequencyHz : setHz, knowledge: 'measured' };
     }
   }
-  if (setHz !== null) return { frequencyHz: setHz, knowledge: 'set' };
   const halfS = response.timesS[0]! + spanS(response) / 2;
   const later = presentSamples(response.timesS, response.values, [halfS, Number.POSITIVE_INFINITY]);
+  if (setHz !== null) {
+    return { frequencyHz: correctedHz(later, setHz) ?? setHz, knowledge: 'set' };
+  }
   const fit =
     fitSine(later.timesS, later.values, { baselineTerms: 2 }) ??
     fitSine(response.timesS, response.values, { baselineTerms: 2 });
   return fit === null || fit.amplitude < 4 * fit.amplitudeU
     ? null
     : { frequencyHz: fit.frequencyHz, knowledge: 'unknown' };
+}
+
+/**
+ * Where the motion truly runs, if the set frequency is wrong by more than a fit started there could find: within a
+ * tenth of it, at least twice as strong as what moves at the set frequency, and not dying away as a transient would.
+ * Null where the set frequency stands.
+ */
+function correctedHz(later: Samples, setHz: number): number | null {
+  const seenHz = strongestToneHz(later);
+  if (seenHz === null) return null;
+  const toneHz = unfoldedHz(seenHz, 1 / medianIntervalS(later), setHz);
+  const apartHz = Math.abs(toneHz - setHz);
+  if (apartHz > FARTHEST_CORRECTION * setHz || apartHz * durationS(later) < 0.75) return null;
+  const options = { baselineTerms: 2, noise: 'white' } as const;
+  const tone = fitSine(later.timesS, later.values, { ...options, startHz: toneHz });
+  const atSet = fitSineAtFrequency(later.timesS, later.values, setHz, options);
+  if (tone === null || atSet === null || tone.amplitude < 2 * atSet.amplitude) return null;
+  const middleS = later.timesS[0]! + spanS(later) / 2;
+  const [early, late] = (
+    [
+      [0, middleS],
+      [middleS, Number.POSITIVE_INFINITY],
+    ] as const
+  ).map((window) => {
+    const half = presentSamples(later.timesS, later.values, window);
+    return fitSineAtFrequency(half.timesS, half.values, tone.frequencyHz, options)?.amplitude ?? 0;
+  });
+  return Math.abs(early! - late!) < 0.1 * Math.max(early!, late!) ? tone.frequencyHz : null;
 }

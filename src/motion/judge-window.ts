@@ -1,7 +1,8 @@
 import { type Measured, measured } from '../numeric/measured.ts';
 import { durationS, type Samples, spanS } from '../sine/samples.ts';
 import type { JointFit } from './joint-fit.ts';
-import { chooseModel, type FrequencyKnowledge, type MotionModel } from './motion-model.ts';
+import type { FrequencyKnowledge, MotionModel } from './motion-model.ts';
+import { withoutForeignMotion } from './other-tones.ts';
 import { type Steadiness, steadiness, strays } from './steadiness.ts';
 
 /** What was found about a window, with the numbers its sentence needs. Times in s, changes as fractions. */
@@ -28,12 +29,14 @@ export interface WindowJudgement {
   readonly windowS: readonly [number, number];
   readonly finding: Finding;
   readonly model: MotionModel;
+  /** A steady foreign tone that was taken out, Hz; null where there was none. */
+  readonly toneHz: number | null;
   readonly leftover: Measured;
   readonly leftoverEffect: number | null;
   readonly change: Measured;
 }
 
-/** Leftover told as steady without a remark, and the most that is still called steady. */
+/** Leftover a window begins with where the record allows, and the most that is still called steady. */
 export const LEFTOVER_AIM = 0.01;
 export const LEFTOVER_LIMIT = 0.02;
 
@@ -136,21 +139,19 @@ function slideFinding(samples: Samples, model: MotionModel, driveHz: number): Fi
 /**
  * Judges the samples of one window as a whole.
  *
- * @param samples harmonics and foreign tones already taken out
- * @param model of these samples, where the caller has it
  * @returns null where no sine can be fitted
  */
 export function judgeWindow(
   samples: Samples,
   driveHz: number,
   knowledge: FrequencyKnowledge,
-  model: MotionModel | null = chooseModel(samples, driveHz, knowledge),
 ): WindowJudgement | null {
+  const { clean, model, toneHz } = withoutForeignMotion(samples, driveHz, knowledge);
   if (model === null) return null;
   const windowS = [samples.timesS[0]!, samples.timesS[samples.timesS.length - 1]!] as const;
   const { joint, steady } = model;
   const blocks = steadiness(
-    samples,
+    clean,
     model.frequencyHz,
     joint?.conditioned ? joint.amplitude : steady.amplitude,
   );
@@ -159,6 +160,7 @@ export function judgeWindow(
     windowS,
     finding,
     model,
+    toneHz,
     leftover,
     leftoverEffect,
     change,

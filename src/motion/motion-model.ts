@@ -35,6 +35,8 @@ export const BASELINE_TERMS = 2;
 const COST_PER_PARAMETER = 12;
 // Residuals below this share of the amplitude are rounding, not motion.
 const ROUNDING = 1e-7;
+// A transient or foreign tone below this share of the amplitude is not worth a word.
+const NEGLIGIBLE = 5e-4;
 // What a description may leave unexplained, as a share of the amplitude.
 const LARGEST_STRAY = 0.02;
 
@@ -61,7 +63,7 @@ export function chooseModel(
   const joints: JointFit[] = [];
   const addJoint = (hz: number, driveFree: boolean, residuals: Float64Array) => {
     const joint = fitJoint(samples, { ...options, driveHz: hz, driveFree, steadyResiduals: residuals });
-    if (joint !== null) joints.push(joint);
+    if (joint !== null && joint.leftover > NEGLIGIBLE) joints.push(joint);
     return joint;
   };
   if (known) {

@@ -3,9 +3,9 @@ import { fitSine } from '../sine/four-parameter.ts';
 import { separableHarmonics } from '../sine/harmonics.ts';
 import type { Samples } from '../sine/samples.ts';
 import { columnCount, sineDesign } from '../sine/sine-model.ts';
-import { fitSineAtFrequency, recordCentre } from '../sine/three-parameter.ts';
+import { recordCentre } from '../sine/three-parameter.ts';
 import type { JointFit } from './joint-fit.ts';
-import { BASELINE_TERMS, chooseModel, type FrequencyKnowledge, type MotionModel } from './motion-model.ts';
+import { chooseModel, type FrequencyKnowledge, type MotionModel } from './motion-model.ts';
 
 /**
  * The samples less their harmonics 2 to 5 of the drive frequency, so that a bent waveform is not taken for a second
@@ -69,9 +69,8 @@ export function withoutForeignMotion(
   const clean = withoutHarmonics(samples, driveHz);
   const model = chooseModel(clean, driveHz, knowledge);
   const toneHz = foreignToneHz(model?.joint ?? null, driveHz);
-  if (toneHz === null) return { clean, model, toneHz };
-  const steady = fitSineAtFrequency(clean.timesS, clean.values, driveHz, { baselineTerms: BASELINE_TERMS });
-  const rest = steady === null ? null : withoutTone(clean, steady.residuals, toneHz);
+  if (model === null || toneHz === null) return { clean, model, toneHz: null };
+  const rest = withoutTone(clean, model.steady.residuals, toneHz);
   if (rest === null) return { clean, model, toneHz: null };
   return { clean: rest, model: chooseModel(rest, driveHz, knowledge), toneHz };
 }

@@ -45,8 +45,8 @@ export function countFrames(
   return { total, lost };
 }
 
-// Eight slices of a period: a marker lost in the same slice of every swing leaves it empty.
-const PHASE_SLICES = 8;
+// Twelve slices of a period: a marker lost in the same slice of every swing leaves it empty.
+const PHASE_SLICES = 12;
 
 /**
  * Share of the period in which the marker was lost every time, although frames fell there: a marker that is covered,

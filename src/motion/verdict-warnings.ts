@@ -13,8 +13,6 @@ export interface WarningFacts {
   readonly driveHz: number | null;
   readonly judged: WindowJudgement;
   readonly harmonics: readonly Measured[];
-  /** A steady foreign tone that was taken out, Hz. */
-  readonly toneHz: number | null;
   readonly frames: { readonly total: number; readonly lost: number };
   readonly periods: number;
 }
@@ -46,8 +44,8 @@ export function dwellWarnings(facts: WarningFacts): MotionWarning[] {
     const sentence = `The motion runs at ${seen}, not at the ${hertz(driveHz)} set: correct the drive frequency.`;
     if (finding.kind !== 'slide') warn('frequency-differs', sentence);
   }
-  if (facts.toneHz !== null) {
-    const sentence = `A steady motion of ${hertz(facts.toneHz)} from another source was taken out; look for it.`;
+  if (judged.toneHz !== null) {
+    const sentence = `A steady motion of ${hertz(judged.toneHz)} from another source was taken out; look for it.`;
     warn('other-tone', sentence);
   }
   const bent = facts.harmonics.flatMap(({ value, u }, k) =>

@@ -10,7 +10,6 @@ import { judgeWindow, type WindowJudgement } from './judge-window.ts';
 import { BASELINE_TERMS } from './motion-model.ts';
 import type { MotionRecord } from './motion-record.ts';
 import { noiseFloorOf } from './noise-floor.ts';
-import { withoutForeignMotion } from './other-tones.ts';
 import { countFrames, requireOrderedRecord, seconds } from './record-checks.ts';
 import { findSteadyWindow, wholePeriods } from './steady-window.ts';
 import { hertz, millimetres, sentenceOf, verdictOf } from './verdict-sentences.ts';
@@ -81,16 +80,15 @@ export function judgeDwell(record: MotionRecord, options: JudgeOptions): DwellJu
     return unmeasured(record, 'failed', why, window);
   }
 
-  const { clean, model, toneHz } = withoutForeignMotion(samples, drive.frequencyHz, drive.knowledge);
   const find = window === null ? findSteadyWindow : judgeWindow;
-  const judged = find(clean, drive.frequencyHz, drive.knowledge, model);
+  const judged = find(samples, drive.frequencyHz, drive.knowledge);
   if (judged === null) {
     const why =
       `No sine of ${hertz(drive.frequencyHz)} can be fitted to these frames: ` +
       'the frame rate is a whole multiple of it, or too few frames were seen.';
     return unmeasured(record, 'failed', why, window);
   }
-  return describe(record, options, samples, judged, toneHz);
+  return describe(record, options, samples, judged);
 }
 
 /** Why a window cannot be used, or null. */
@@ -140,7 +138,6 @@ function describe(
   options: JudgeOptions,
   samples: Samples,
   judged: WindowJudgement,
-  toneHz: number | null,
 ): DwellJudgement {
   const { model, finding } = judged;
   const frequencyHz = model.frequencyHz;
@@ -162,10 +159,8 @@ function describe(
       floor === null
         ? ''
         : `: a swing below ${millimetres(floor.detectable, floor.amplitudeU)} cannot be seen here`;
-    return {
-      ...unmeasured(record, 'failed', `Nothing moves at ${hertz(frequencyHz)} above the noise${limit}.`),
-      fit,
-    };
+    const why = `Nothing moves at ${hertz(frequencyHz)} above the noise${limit}${otherMotion(part)}.`;
+    return { ...unmeasured(record, 'failed', why, options.window ?? null), fit };
   }
   const drive = options.driveRecord;
   const lag =
@@ -178,7 +173,6 @@ function describe(
     driveHz: options.driveHz,
     judged,
     harmonics,
-    toneHz,
     frames: { total, lost },
     periods: spanS(part) * frequencyHz,
   });
@@ -200,6 +194,13 @@ function describe(
     waitS: steady ? 0 : finding.kind === 'transient' ? finding.waitS : null,
     warnings,
   };
+}
+
+/** What moves instead, for the sentence. */
+function otherMotion(part: Samples): string {
+  const strongest = fitSine(part.timesS, part.values, { baselineTerms: BASELINE_TERMS });
+  if (strongest === null || strongest.amplitude < 5 * strongest.amplitudeU) return '';
+  return `; the strongest motion is at ${hertz(strongest.frequencyHz)}`;
 }
 
 /** Times, response and drive inside the window; frames outside are left out. */
