@@ -4,6 +4,7 @@ import { fitRegion, type Region } from '../clip/region.ts';
 import { trueTimes } from '../clip/true-times.ts';
 import { InputError } from '../errors.ts';
 import type { ClipSpec } from '../testfile/schema.ts';
+import { TemplateAverager } from '../track/averaged-template.ts';
 import { MarkerTracker } from '../track/marker-tracker.ts';
 import type { ClipFacts, ClipTracks, MarkerTrack } from './clip-tracks.ts';
 import type { DecodeContext } from './frame-luma.ts';
@@ -13,6 +14,7 @@ import type { PreparedMarker, PreparedSetup } from './prepare-markers.ts';
 import { TrackRecorder } from './track-recorder.ts';
 
 const GROWTHS = [1, 2, 4, 1000]; // each try gives a marker more room; the last decodes the whole frame
+const AVERAGED_FRAMES = 100; // beyond this an averaged template gains nothing that compression leaves to gain
 const PROGRESS_EVERY = 16; // frames: some ten messages a second
 const THROUGH_MARK_PX = 3; // a track that passes further than this from the clicked point follows something else
 
@@ -22,6 +24,8 @@ export interface TrackClipJob {
   readonly info: ClipInfo;
   readonly setup: PreparedSetup;
   readonly sha256: string | null;
+  /** Whether to go over the clip once more with templates averaged over it. */
+  readonly refine: boolean;
 }
 
 /** Tells how far the clip is; called every few frames. */
@@ -33,6 +37,7 @@ interface Pass {
   readonly lostFrames: number;
   readonly complaints: readonly string[];
   readonly cramped: boolean;
+  readonly averagers: readonly TemplateAverager[];
 }
 
 /** One decoding pass over the clip with every marker followed in it; ends early when a marker needs more room. */
@@ -53,6 +58,8 @@ async function trackOnce(
     return new MarkerTracker(marker.template, first ? { start: first } : {});
   });
   const decoded = regions.map((region) => fitRegion(region, info));
+  const averagers = job.refine ? markers.map((marker) => new TemplateAverager(marker.template)) : [];
+  const stride = Math.max(1, Math.floor(info.frameCount / AVERAGED_FRAMES));
   const frameIndex = new Int32Array(info.frameCount);
   let cramped = false;
   let done = 0;
@@ -70,6 +77,9 @@ async function trackOnce(
         if (!image || !region || !recorder) throw new Error('a marker without its region');
         const step = tracker.step(image, region.x, region.y, timesS[frame.index] ?? frame.timeS);
         recorder.add(step, frame.doubtful);
+        if (step.state === 'ok' && !frame.doubtful && done % stride === 0) {
+          averagers[k]?.add(image, region.x, region.y, step.x, step.y, tracker.deformation);
+        }
         if (step.nearBorder && mayGrow && !whole) cramped = true;
       }
       frameIndex[done++] = frame.index;
@@ -85,6 +95,7 @@ async function trackOnce(
     lostFrames: result.lostFrames.length,
     complaints: result.complaints,
     cramped,
+    averagers,
   };
 }
 
@@ -94,6 +105,13 @@ function wishOf(marker: PreparedMarker, seen: readonly Sighting[]): RegionWish {
     patchHeightPx: marker.template.heightPx,
     seen: seen.length > 0 ? seen : [marker.at],
   };
+}
+
+function withAverages(
+  markers: readonly PreparedMarker[],
+  averagers: readonly TemplateAverager[],
+): PreparedMarker[] {
+  return markers.map((marker, k) => ({ ...marker, template: averagers[k]?.finish() ?? marker.template }));
 }
 
 /** Why a finished track must not be trusted as a whole; null where it may. */
@@ -161,15 +179,27 @@ export async function trackClip(
   const wishes = setup.markers.map((marker, k) => wishOf(marker, sightings[k] ?? []));
   const unseen = sightings.some((list) => list.length === 0);
   let pass: Pass | null = null;
+  let regions: Region[] = [];
   for (const [k, growth] of GROWTHS.entries()) {
     const last = k === GROWTHS.length - 1;
     if (unseen && !last) continue;
-    const regions = planRegions(info, wishes, growth);
+    regions = planRegions(info, wishes, growth);
     pass = await trackOnce(job, setup.markers, sightings, regions, !last, context, onTracked);
     if (!pass.cramped) break;
   }
   if (!pass) throw new Error('no pass was made');
-  const done = pass;
+  const { averagers } = pass;
+  const done = job.refine
+    ? await trackOnce(
+        { ...job, refine: false },
+        withAverages(setup.markers, averagers),
+        sightings,
+        regions,
+        false,
+        context,
+        onTracked,
+      )
+    : pass;
   if (done.frameIndex.length === 0)
     throw new InputError(
       `No frame of clip "${spec.id}" decodes; film it again or copy it anew from the phone.`,

@@ -102,7 +102,11 @@ class Tracking {
         );
       }
       const sha256 = await contentHash(info.path, this.context.signal);
-      const tracks = await trackClip({ spec, info, setup: prepared, sha256 }, this.context, onTracked);
+      const tracks = await trackClip(
+        { spec, info, setup: prepared, sha256, refine: this.options.refine ?? false },
+        this.context,
+        onTracked,
+      );
       return {
         ...tracks,
         warnings: [
