@@ -1,6 +1,6 @@
 import { CODEC_LIMIT_PX } from '../camera/codec-limit.ts';
-import { exposureAttenuation } from '../camera/exposure-blur.ts';
 import { chooseFrameRate, framesSentence } from './frame-rate.ts';
+import { chooseShutter, exposureLoss } from './shutter-advice.ts';
 
 /** What is known of the camera; every entry may be left out. */
 export interface CameraKnowledge {
@@ -51,20 +51,9 @@ export const USUAL_NOISE_PX = 0.03;
 const USUAL_FRAME_LENGTH_PX = 1920;
 const USUAL_VIEW_ANGLE_DEG = 60;
 const FRAME_FILL = 0.7; // of the frame's length for the swing, so that marker and rule stay in view
-const SHUTTERS_S = [1 / 30, 1 / 60, 1 / 120, 1 / 250, 1 / 500, 1 / 1000, 1 / 2000, 1 / 4000];
-const WANTED_SMEAR_PX = 3;
-const WANTED_LOSS = 0.01;
 const PLANE_TOLERANCE = 0.002; // of the distance: keeps the scale within 0.2 %
-
-/** Fraction by which averaging over the exposure lessens the amplitude of a sine, 0 to 1. */
-export function exposureLoss(driveHz: number, exposureS: number): number {
-  return 1 - Math.abs(exposureAttenuation(driveHz, exposureS));
-}
-
-/** Distance moved during one exposure at the fastest moment, px. */
-export function smearPx(driveHz: number, amplitudePx: number, exposureS: number): number {
-  return 2 * amplitudePx * Math.sin(Math.min(Math.PI * driveHz * exposureS, Math.PI / 2));
-}
+const GOOD_DISTANCE_MM = 1000; // from there the rule need not lie in the plane of motion to better than 2 mm
+const COMFORTABLE_PX = 5; // ten times what phone video begins to hide
 
 /** Advice on frame rate, shutter, scale and place of the camera for the motion to be filmed. */
 export function cameraAdvice(motion: MotionToShow, camera: CameraKnowledge): CameraAdvice {
@@ -76,15 +65,23 @@ export function cameraAdvice(motion: MotionToShow, camera: CameraKnowledge): Cam
   if (rate.sentence !== null) sentences.push(rate.sentence);
 
   const frameLengthPx = camera.frameLengthPx ?? USUAL_FRAME_LENGTH_PX;
+  const perDistance = 2 * Math.tan((camera.viewAngleDeg ?? USUAL_VIEW_ANGLE_DEG) * (Math.PI / 360));
   const fillingPxPerMm =
     motion.largestMm === null ? null : (FRAME_FILL * frameLengthPx) / (2 * motion.largestMm);
-  const pxPerMm = camera.pxPerMm ?? fillingPxPerMm;
-  const exposure = shutter(motion, camera, pxPerMm, rate.frameRateHz);
-  sentences.push(...exposure.sentences, ...scaleSentences(motion, camera, pxPerMm, fillingPxPerMm));
+  const pxPerMm =
+    camera.pxPerMm ?? advisedScale(motion, fillingPxPerMm, frameLengthPx / (GOOD_DISTANCE_MM * perDistance));
+  const amplitudePx = pxPerMm === null || motion.largestMm === null ? 0 : pxPerMm * motion.largestMm;
+  const exposure = chooseShutter({
+    ...motion,
+    amplitudePx,
+    frameRateHz: rate.frameRateHz,
+    exposureS: camera.exposureS ?? null,
+  });
+  if (exposure.sentence !== null) sentences.push(exposure.sentence);
+  sentences.push(...scaleSentences(motion, camera, pxPerMm, fillingPxPerMm));
 
   const fieldLengthMm = pxPerMm === null ? null : frameLengthPx / pxPerMm;
-  const angle = ((camera.viewAngleDeg ?? USUAL_VIEW_ANGLE_DEG) * Math.PI) / 180;
-  const distanceMm = fieldLengthMm === null ? null : fieldLengthMm / (2 * Math.tan(angle / 2));
+  const distanceMm = fieldLengthMm === null ? null : fieldLengthMm / perDistance;
   sentences.push(...placeSentences(distanceMm, camera.viewAngleDeg === undefined));
   return {
     frameRateHz: rate.frameRateHz,
@@ -97,31 +94,17 @@ export function cameraAdvice(motion: MotionToShow, camera: CameraKnowledge): Cam
   };
 }
 
-function shutter(motion: MotionToShow, camera: CameraKnowledge, pxPerMm: number | null, frameRateHz: number) {
-  const amplitudePx = pxPerMm === null || motion.largestMm === null ? 0 : pxPerMm * motion.largestMm;
-  const judge = (exposureS: number) => ({
-    loss: exposureLoss(motion.highestHz, exposureS),
-    smear: smearPx(motion.fastestHz, amplitudePx, exposureS),
-  });
-  const slowEnough = SHUTTERS_S.filter((exposureS) => exposureS <= 1.001 / frameRateHz);
-  const advised =
-    slowEnough.find((exposureS) => {
-      const { loss, smear } = judge(exposureS);
-      return loss <= WANTED_LOSS && smear <= WANTED_SMEAR_PX;
-    }) ?? (SHUTTERS_S.at(-1) as number);
-  const exposureS = camera.exposureS ?? advised;
-  const { loss, smear } = judge(exposureS);
-  const text = `1/${Math.round(1 / exposureS)} s`;
-  const sentences: string[] = [];
-  if (camera.exposureS === undefined)
-    sentences.push(
-      `Lock the shutter at ${text} or shorter, and note it: exposure then takes ${(100 * loss).toPrecision(2)} % off the amplitude at most, which is put back. Add light rather than gain.`,
-    );
-  else if (loss > WANTED_LOSS || smear > WANTED_SMEAR_PX)
-    sentences.push(
-      `An exposure of ${text} smears the marker over up to ${smear.toPrecision(2)} px and takes up to ${(100 * loss).toPrecision(2)} % off the amplitude (put back, but better avoided): 1/${Math.round(1 / advised)} s would do.`,
-    );
-  return { exposureS, sentences };
+/**
+ * Far enough for the plane of the rule not to matter, closer only where the smallest swing needs it, never so close
+ * that the largest leaves the frame.
+ */
+function advisedScale(
+  motion: MotionToShow,
+  fillingPxPerMm: number | null,
+  atGoodDistance: number,
+): number | null {
+  if (fillingPxPerMm === null || motion.smallestMm === null) return null;
+  return Math.min(fillingPxPerMm, Math.max(atGoodDistance, COMFORTABLE_PX / motion.smallestMm));
 }
 
 function scaleSentences(
@@ -147,7 +130,7 @@ function scaleSentences(
       );
   } else
     sentences.push(
-      `Fill the frame: ${pxPerMm.toPrecision(2)} px/mm puts the largest swing on about two thirds of its length.`,
+      `A view of ${pxPerMm.toPrecision(2)} px/mm shows the largest swing over ${(2 * largestMm * pxPerMm).toFixed(0)} px and the smallest over ${(2 * smallestMm * pxPerMm).toPrecision(2)} px from end to end.`,
     );
   const smallestPx = smallestMm * pxPerMm;
   if (smallestPx < CODEC_DEAD_ZONE_PX)

@@ -188,7 +188,11 @@ function sampled(nodes: readonly Node[], gainKnown: boolean): KnowledgeCloud {
 
 /** Quantile of values that are equally likely; `probability` in [0, 1]. */
 export function quantileOf(values: ArrayLike<number>, probability: number): number {
-  const sorted = Float64Array.from(values).sort();
+  return quantileOfSorted(Float64Array.from(values).sort(), probability);
+}
+
+/** Quantile of equally likely values that are in ascending order already. */
+export function quantileOfSorted(sorted: Float64Array, probability: number): number {
   const place = Math.min(Math.max(probability * sorted.length - 0.5, 0), sorted.length - 1);
   const below = Math.floor(place);
   const low = sorted[below]!;

@@ -45,17 +45,21 @@ export interface PlanSetting {
 }
 
 // Where no dwell has been measured and no camera is known (common practice, no source).
-const ASSUMED_RELATIVE = 0.005;
+const ASSUMED_RELATIVE = 0.01;
 const ASSUMED_FLOOR_OF_PEAK = 0.005;
 
 /**
  * Noise to expect of a further dwell, from those measured (the smallest uncertainty as floor, the rest as a
- * relative part), or assumed: half a percent of the amplitude and half a percent of the peak.
+ * relative part), or assumed: one percent of the amplitude, or what is wanted, and half a percent of the peak.
  * @param peakMm the largest amplitude expected, in the unit that amplitudes will have
  */
-export function expectedNoise(points: readonly PlanPoint[], peakMm: number): DwellNoise {
+export function expectedNoise(
+  points: readonly PlanPoint[],
+  peakMm: number,
+  wantedRelative = ASSUMED_RELATIVE,
+): DwellNoise {
   const known = points.filter((point) => point.uAmplitudeMm !== null && point.uAmplitudeMm > 0);
-  if (known.length === 0) return { relative: ASSUMED_RELATIVE, floorMm: ASSUMED_FLOOR_OF_PEAK * peakMm };
+  if (known.length === 0) return { relative: wantedRelative, floorMm: ASSUMED_FLOOR_OF_PEAK * peakMm };
   const floorMm = Math.min(...known.map((point) => point.uAmplitudeMm ?? 0));
   const relatives = known
     .map((point) => Math.sqrt((point.uAmplitudeMm ?? 0) ** 2 - floorMm ** 2) / point.amplitudeMm)

@@ -1,5 +1,5 @@
 import type { ResonanceModel } from '../resonance/models.ts';
-import { type KnowledgeCloud, quantileOf } from './knowledge-cloud.ts';
+import { type KnowledgeCloud, quantileOf, quantileOfSorted } from './knowledge-cloud.ts';
 import { planResponse } from './plan-response.ts';
 
 /** The amplitude to expect at a drive frequency, mm zero-to-peak: the even chance and a range of nine in ten. */
@@ -29,11 +29,13 @@ export function predictAmplitude(
 ): PredictedAmplitude | null {
   const { gainMm } = cloud;
   if (gainMm === null) return null;
-  const amplitudes = unitAmplitudes(model, cloud, driveHz).map((amplitude, k) => amplitude * gainMm[k]!);
+  const amplitudes = unitAmplitudes(model, cloud, driveHz)
+    .map((amplitude, k) => amplitude * gainMm[k]!)
+    .sort();
   return {
-    medianMm: quantileOf(amplitudes, 0.5),
-    lowMm: quantileOf(amplitudes, 0.05),
-    upperMm: quantileOf(amplitudes, 0.95),
+    medianMm: quantileOfSorted(amplitudes, 0.5),
+    lowMm: quantileOfSorted(amplitudes, 0.05),
+    upperMm: quantileOfSorted(amplitudes, 0.95),
   };
 }
 

@@ -77,7 +77,9 @@ export function makeRunSheet(task: RunSheetTask): RunSheet {
   const coarse = chooseFrequencies(choice);
   const gridHz = (range.wide[1] - range.wide[0]) / Math.max(range.candidates.length - 1, 1);
   const refined = refineFrequencies(choice, coarse, gridHz, [runnable[0]!, runnable.at(-1)!], 1);
-  const driveHz = distinctOnSteps([...wide, ...refined], range.resolutionHz).filter(task.allowed);
+  // between two candidates that may be run there may be a peak that may not
+  const inner = refined.map((hz, i) => (task.allowed(onSteps(hz, range.resolutionHz)) ? hz : coarse[i]!));
+  const driveHz = distinctOnSteps([...wide, ...inner], range.resolutionHz).filter(task.allowed);
   if (driveHz.length < toRun)
     notes.push(
       `Only ${driveHz.length} of ${toRun} dwells find a place below the travel limit and on the generator's steps.`,
