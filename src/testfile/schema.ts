@@ -122,6 +122,16 @@ const ringdown = z.looseObject({
   clip: id,
   window: window.optional(),
   excluded: z.string().optional(),
+  /** What an earlier measurement found. */
+  measured: z
+    .looseObject({
+      naturalHz: z.number().positive(),
+      naturalHzU: z.number().min(0).nullable(),
+      dampingRatio: z.number(),
+      dampingRatioU: z.number().min(0).nullable(),
+      clipSha256: z.string().optional(),
+    })
+    .optional(),
 });
 
 /** How a part can be driven. */
