@@ -5,6 +5,7 @@ import type { ClipInfo } from '../../src/clip/clip-info.ts';
 import { decodeRegions, decodeWholeFrames } from '../../src/clip/decode-regions.ts';
 import type { DecodeOptions, DecodeResult } from '../../src/clip/decoded-frame.ts';
 import { probeClip } from '../../src/clip/probe.ts';
+import { runFfmpeg } from '../../src/clip/run-ffmpeg.ts';
 import { CancelledError, InputError } from '../../src/errors.ts';
 import { cutRealFfmpegAfter, fakeFfmpeg } from '../helpers/fake-ffmpeg.ts';
 import {
@@ -61,21 +62,33 @@ describe('all frames and exact ticks', () => {
   const ticksPerS = 90_000;
   const tick = (n: number): number => n * 3003 + ((n * n * 577) % 1000) + (n > 20 ? 12_000 : 0);
   const pts = { expression: 'N*3003+mod(N*N*577\\,1000)+gt(N\\,20)*12000', ticksPerS };
-  test.each<[string, Pick<ClipRecipe, 'name' | 'encoder'>]>([
+  test.for<[string, Pick<ClipRecipe, 'name' | 'encoder'>]>([
     ['H.264 in MP4', { name: 'vfr.mp4', encoder: H264 }],
     ['H.264 with a pyramid of B-frames in MP4', { name: 'vfr-b.mp4', encoder: H264_B }],
     ['H.264 with B-frames in MOV', { name: 'vfr-b.mov', encoder: H264_B }],
     ['H.264 with B-frames in MPEG-TS', { name: 'vfr-b.ts', encoder: H264_B }],
-  ])('variable frame rate, %s: every frame under its own number and its own tick', async (_what, recipe) => {
-    const clip = await probe(makeClip(folder, { ...recipe, frames: 40, pts }));
-    const seen = await see(clip);
-    expect(seen.numbers).toEqual(upTo(40));
-    expect(seen.indices).toEqual(upTo(40));
-    expect(seen.timesS).toEqual(upTo(40).map((n) => tick(n) / ticksPerS));
-    expect([...clip.timesS]).toEqual(seen.timesS);
-    expect(seen.result).toMatchObject({ delivered: 40, lostFrames: [], doubtfulFrames: [], complaints: [] });
-    expect(clip.regularity.variable).toBe(true);
-  });
+  ])(
+    'variable frame rate, %s: every frame under its own number and its own tick',
+    async ([, recipe], context) => {
+      const path = makeClip(folder, { ...recipe, frames: 40, pts });
+      const alone = await runFfmpeg(ffmpeg.path, ['-nostdin', '-i', path, '-f', 'null', '-']);
+      if (alone.signal !== null)
+        context.skip(`this build of ffmpeg crashes on such a file by itself (${alone.signal})`);
+      const clip = await probe(path);
+      const seen = await see(clip);
+      expect(seen.numbers).toEqual(upTo(40));
+      expect(seen.indices).toEqual(upTo(40));
+      expect(seen.timesS).toEqual(upTo(40).map((n) => tick(n) / ticksPerS));
+      expect([...clip.timesS]).toEqual(seen.timesS);
+      expect(seen.result).toMatchObject({
+        delivered: 40,
+        lostFrames: [],
+        doubtfulFrames: [],
+        complaints: [],
+      });
+      expect(clip.regularity.variable).toBe(true);
+    },
+  );
 
   test('Matroska rounds to milliseconds when written; what it holds comes back exactly', async () => {
     const clip = await probe(makeClip(folder, { name: 'vfr.mkv', frames: 40, encoder: H264_B, pts }));
