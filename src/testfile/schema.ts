@@ -196,6 +196,24 @@ const planning = z.looseObject({
   dwells: z.int().min(3).max(1000).optional(),
 });
 
+/** What stands in the report beside the measurement, in the user's own words; printed as typed, never read as markup. */
+const reporting = z.looseObject({
+  /** Name at the head of the report, and under it address or other lines; lines are kept. */
+  company: z.string().optional(),
+  header: z.string().optional(),
+  assembly: z.string().optional(),
+  operator: z.string().optional(),
+  customer: z.string().optional(),
+  /** Printed after the results; an empty line begins a new paragraph. */
+  remarks: z.string().optional(),
+  /** Date of the test as it shall be printed. */
+  date: z.string().optional(),
+  /** Lengths in inches; file and results stay in mm. */
+  inches: z.boolean().optional(),
+  /** Paper to print on; A4 where absent. */
+  paper: z.enum(['A4', 'Letter']).optional(),
+});
+
 /** Shape of a test file. */
 export const testSchema = z.looseObject({
   format: z.literal(TEST_FORMAT),
@@ -205,6 +223,7 @@ export const testSchema = z.looseObject({
   clips: z.array(clip).default([]),
   configurations: z.array(configuration).default([]),
   plan: planning.optional(),
+  report: reporting.optional(),
 });
 
 /** A point of the frame as displayed, px. */
@@ -229,5 +248,7 @@ export type SweepSpec = Configuration['sweeps'][number];
 export type RingDownSpec = Configuration['ringdowns'][number];
 /** One of EXCITATIONS. */
 export type Excitation = (typeof EXCITATIONS)[number];
+/** What stands in the report in the user's own words. */
+export type ReportSpec = NonNullable<TestFile['report']>;
 /** Starting knowledge and wishes for the run sheet. */
 export type PlanningSpec = NonNullable<TestFile['plan']>;
