@@ -115,6 +115,16 @@ function unwrapped(lag: Measured): Measured {
   return lag.value !== null && lag.value < -90 ? { ...lag, value: lag.value + 360 } : lag;
 }
 
+const START_PERIODS = 2; // a record with the start-up in it may hold the exciter's own start too
+const LEAST_PERIODS = 3;
+
+/** Where the drive is fitted: the dwell's window, less the exciter's own start where the start-up is in it. */
+function driveWindow(judged: JudgedDwell): readonly [number, number] {
+  const [from, to] = judged.window;
+  const later = from + START_PERIODS / judged.frequencyHz;
+  return judged.jointFit && to - later >= LEAST_PERIODS / judged.frequencyHz ? [later, to] : judged.window;
+}
+
 function correctedDrive(clip: EvaluatedClip, judged: JudgedDwell, drive: SeenSine): CorrectedDwell {
   const restPx = clip.motion.driveRestPx ?? clip.motion.responseRestPx;
   const scale = mmPerPx(clip, restPx);
@@ -197,7 +207,7 @@ export function evaluateDwell(
       lostFrames: judged.lostFrames,
     };
   const scale = mmPerPx(clip, clip.motion.responseRestPx);
-  const driveSine = clip.drive ? sineInWindow(clip.drive, judged.window, judged.frequencyHz) : null;
+  const driveSine = clip.drive ? sineInWindow(clip.drive, driveWindow(judged), judged.frequencyHz) : null;
   const drive = driveSine ? correctedDrive(clip, judged, driveSine) : null;
   const drivePx = driveSine
     ? driveSine.amplitude / mmPerPx(clip, clip.motion.driveRestPx ?? clip.motion.responseRestPx)
