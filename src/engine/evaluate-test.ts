@@ -4,6 +4,7 @@ import type { ClipOutcome } from './clip-tracks.ts';
 import { failedDwell, typedDwell } from './dwell-without-clip.ts';
 import { type EvaluatedClips, evaluateClips } from './evaluate-clips.ts';
 import { evaluateDwell } from './evaluate-dwell.ts';
+import { evaluateSweep, failedSweep } from './evaluate-sweep.ts';
 import { fitConfiguration } from './fit-configuration.ts';
 import { PROGRAM } from './program.ts';
 import { type DwellResult, RESULTS_FORMAT, RESULTS_VERSION, type Results } from './results.ts';
@@ -29,15 +30,14 @@ function dwellResult(
     );
   const clip = evaluated.clips.get(spec.clip);
   if (clip) return evaluateDwell(configuration, spec, clip);
-  const known = test.clips.some((each) => each.id === spec.clip);
-  return failedDwell(
-    configuration,
-    spec,
-    evaluated.failures.get(spec.clip) ??
-      (known
-        ? `Clip "${spec.clip}" has not been measured yet.`
-        : `Dwell "${spec.id}" names clip "${spec.clip}", which is not in the test file; add the clip or correct the id.`),
-  );
+  return failedDwell(configuration, spec, whyNotMeasured(test, evaluated, spec.clip));
+}
+
+/** Why a clip that something refers to brought no motion, in one sentence. */
+function whyNotMeasured(test: TestFile, evaluated: EvaluatedClips, clip: string): string {
+  const known = test.clips.some((each) => each.id === clip);
+  if (!known) return `There is no clip "${clip}" in the test file; add the clip or correct the id.`;
+  return evaluated.failures.get(clip) ?? `Clip "${clip}" has not been measured yet.`;
 }
 
 /**
@@ -48,7 +48,15 @@ export function evaluateTest(test: TestFile, outcomes: ReadonlyMap<string, ClipO
   const evaluated = evaluateClips(test, outcomes);
   const dwells: DwellResult[] = [];
   const resonances = test.configurations.map((configuration) => {
-    const own = configuration.dwells.map((spec) => dwellResult(test, evaluated, configuration, spec));
+    const own = [
+      ...configuration.dwells.map((spec) => dwellResult(test, evaluated, configuration, spec)),
+      ...configuration.sweeps.flatMap((sweep) => {
+        const clip = evaluated.clips.get(sweep.clip);
+        return clip
+          ? evaluateSweep(configuration, sweep, clip)
+          : failedSweep(configuration, sweep, whyNotMeasured(test, evaluated, sweep.clip));
+      }),
+    ];
     dwells.push(...own);
     return fitConfiguration(configuration, own);
   });

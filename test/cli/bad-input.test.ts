@@ -152,7 +152,7 @@ describe('a clip that cannot be measured costs its own dwell only', () => {
     [
       'an unknown clip',
       (test: TestJson) => (test['configurations'][0].dwells[0].clip = 'nix'),
-      /clip "nix", which is not in the test file/,
+      /no clip "nix"/,
     ],
     [
       'a drive frequency of 0',
