@@ -16,7 +16,7 @@ const LEFTOVER_STEPS: readonly (readonly [number, number])[] = [
   [0.001, 10],
   [0.003, 7],
   [LEFTOVER_AIM, 5],
-  [LEFTOVER_LIMIT, 3],
+  [LEFTOVER_LIMIT, 5],
 ];
 const PERIODS_WANTED = 5;
 const FEWEST_FRAMES = 20;
