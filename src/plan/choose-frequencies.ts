@@ -27,16 +27,24 @@ const UNCERTAINTY_POWER = 0.25;
 const ofMeanUncertainty = (sum: number, oscillators: number) =>
   -Math.log(sum / oscillators) / UNCERTAINTY_POWER;
 
-/** Goodness, over all oscillators, of what is held plus dwells at the frequencies. */
-export function goodnessOver(choice: FrequencyChoice, frequencies: readonly number[]): number {
-  const total = new Float64Array(CELLS);
-  let sum = 0;
-  for (let k = 0; k < choice.oscillators.length; k++) {
-    total.set(choice.held[k]!);
-    for (const driveHz of frequencies) addDwell(total, choice.setting, choice.oscillators[k]!, driveHz);
-    sum += Math.exp(-UNCERTAINTY_POWER * designGoodness(total, choice.goal));
-  }
-  return ofMeanUncertainty(sum, choice.oscillators.length);
+/** Goodness, over all oscillators, of one more dwell beside what is held and dwells at the other frequencies. */
+function goodnessBeside(choice: FrequencyChoice, others: readonly number[]): (driveHz: number) => number {
+  const { oscillators, setting, goal } = choice;
+  const beside = oscillators.map((oscillator, k) => {
+    const information = choice.held[k]!.slice();
+    for (const driveHz of others) addDwell(information, setting, oscillator, driveHz);
+    return information;
+  });
+  const trial = new Float64Array(CELLS);
+  return (driveHz) => {
+    let sum = 0;
+    for (let k = 0; k < oscillators.length; k++) {
+      trial.set(beside[k]!);
+      addDwell(trial, setting, oscillators[k]!, driveHz);
+      sum += Math.exp(-UNCERTAINTY_POWER * designGoodness(trial, goal));
+    }
+    return ofMeanUncertainty(sum, oscillators.length);
+  };
 }
 
 /**
@@ -84,15 +92,18 @@ export function chooseFrequencies(choice: FrequencyChoice): number[] {
   const best = (): number => {
     let winner = -1;
     let winning = Number.NEGATIVE_INFINITY;
+    const free: number[] = [];
     for (let c = 0; c < candidates.length; c++) {
       if (!allowed(c)) continue;
+      free.push(c);
       const goodness = goodnessWith(c);
-      if (goodness > winning || winner < 0) {
+      if (goodness > winning) {
         winner = c;
         winning = goodness;
       }
     }
-    return winner;
+    // too few dwells yet to determine anything: begin spread out
+    return winner >= 0 ? winner : (free[Math.floor(((chosen.length + 0.5) / count) * free.length)] ?? -1);
   };
 
   while (chosen.length < count) {
@@ -117,38 +128,56 @@ export function chooseFrequencies(choice: FrequencyChoice): number[] {
   return chosen.map((c) => candidates[c]!).sort((a, b) => a - b);
 }
 
+/** How far and how finely chosen frequencies are moved, Hz. */
+export interface Refinement {
+  /** Largest move in a round; halved when no frequency moves far any more. */
+  readonly reachHz: number;
+  readonly toleranceHz: number;
+  readonly rounds: number;
+  /** No frequency leaves this range. */
+  readonly rangeHz: readonly [number, number];
+}
+
 /**
  * Moves chosen frequencies off the grid of candidates to where the goodness is greatest, one after the other, each
- * within `reachHz` and clear of its neighbours. No frequency leaves [lowHz, highHz].
+ * clear of its neighbours, by golden section.
  */
 export function refineFrequencies(
   choice: FrequencyChoice,
   start: readonly number[],
-  reachHz: number,
-  [lowHz, highHz]: readonly [number, number],
-  rounds = 3,
+  how: Refinement,
 ): number[] {
   const frequencies = [...start].sort((a, b) => a - b);
   const ratio = (Math.sqrt(5) - 1) / 2;
-  let reach = reachHz;
-  for (let round = 0; round < rounds; round++) {
+  let reach = how.reachHz;
+  for (let round = 0; round < how.rounds; round++) {
+    let farthest = 0;
     for (let slot = 0; slot < frequencies.length; slot++) {
       const here = frequencies[slot]!;
-      const goodness = (driveHz: number) => goodnessOver(choice, frequencies.with(slot, driveHz));
-      let low = Math.max(here - reach, (frequencies[slot - 1] ?? -Infinity) + choice.leastSpacingHz, lowHz);
-      let high = Math.min(here + reach, (frequencies[slot + 1] ?? Infinity) - choice.leastSpacingHz, highHz);
+      const goodness = goodnessBeside(choice, frequencies.toSpliced(slot, 1));
+      let low = Math.max(
+        here - reach,
+        (frequencies[slot - 1] ?? -Infinity) + choice.leastSpacingHz,
+        how.rangeHz[0],
+      );
+      let high = Math.min(
+        here + reach,
+        (frequencies[slot + 1] ?? Infinity) - choice.leastSpacingHz,
+        how.rangeHz[1],
+      );
       if (!(high > low)) continue;
-      const tolerance = 1e-7 * here;
-      while (high - low > tolerance) {
+      while (high - low > how.toleranceHz) {
         const left = high - ratio * (high - low);
         const right = low + ratio * (high - low);
         if (goodness(left) > goodness(right)) high = right;
         else low = left;
       }
       const found = (low + high) / 2;
-      if (goodness(found) > goodness(here)) frequencies[slot] = found;
+      if (goodness(found) <= goodness(here)) continue;
+      frequencies[slot] = found;
+      farthest = Math.max(farthest, Math.abs(found - here));
     }
-    reach /= 2;
+    if (farthest < reach / 4) reach /= 2;
   }
   return frequencies;
 }

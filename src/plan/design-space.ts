@@ -87,7 +87,7 @@ export interface FrequencyRange {
 const WIDE_HALF_BANDWIDTHS = 5;
 const WIDE_AT_LEAST = 0.15; // of the natural frequency
 const WIDE_AT_MOST = 0.5;
-const STEPS_PER_HALF_BANDWIDTH = 6;
+const STEPS_PER_HALF_BANDWIDTH = 5;
 
 /**
  * Finds the range to plan in: around what the natural frequency may be (nine chances in ten) and well down both
@@ -105,7 +105,7 @@ export function frequencyRange(cloud: KnowledgeCloud, resolutionHz: number | nul
   const wide = [Math.max(onSteps(low, step), step), onSteps(high, step)] as const;
   const count = Math.min(
     Math.max(Math.round(((high - low) * STEPS_PER_HALF_BANDWIDTH) / (dampingRatio * naturalHz)), 60),
-    240,
+    160,
   );
   const candidates = new Set<number>();
   for (let i = 0; i <= count; i++) candidates.add(onSteps(wide[0] + ((wide[1] - wide[0]) * i) / count, step));

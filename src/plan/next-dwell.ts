@@ -1,10 +1,11 @@
-import { chooseFrequencies, type FrequencyChoice } from './choose-frequencies.ts';
+import { chooseFrequencies, type FrequencyChoice, refineFrequencies } from './choose-frequencies.ts';
 import type { DesignGoal } from './design-criterion.ts';
 import {
   type FrequencyRange,
   frequencyRange,
   heldInformation,
   logSpread,
+  onSteps,
   representatives,
   typicalOscillator,
 } from './design-space.ts';
@@ -95,12 +96,14 @@ export function nextDwell(task: NextDwellTask): NextDwell {
     oscillators,
     held,
     goal: task.goal ?? 'natural-frequency-and-damping',
-    candidates: unmeasured(steps.length > 0 ? steps : [runnable[0]!], points, range.resolutionHz),
+    candidates: (steps.length > 0 ? steps : [runnable[0]!]).filter((hz) =>
+      isNew(hz, points, range.resolutionHz),
+    ),
     count: 1,
     leastSpacingHz: 0,
   };
-  const [best] = chooseFrequencies(choice);
-  if (best === undefined)
+  const best = bestStep(choice, task, range);
+  if (best === null)
     return nothing(before, false, 'Every step of the generator that could be run has been measured.');
   const change = expectedChange(choice, best, before);
   const verdict = fitted ? verdictOn(change, task.targets ?? {}, task.leastGain ?? LEAST_GAIN) : null;
@@ -145,6 +148,17 @@ function nothing(before: Spreads, enough: boolean, sentence: string): NextDwell 
   };
 }
 
+/** The best candidate, moved to the best step of the generator near it where that may be run and is new. */
+function bestStep(choice: FrequencyChoice, task: NextDwellTask, range: FrequencyRange): number | null {
+  const [coarse] = chooseFrequencies(choice);
+  if (coarse === undefined) return null;
+  const reachHz = (range.wide[1] - range.wide[0]) / range.candidates.length;
+  const how = { reachHz, toleranceHz: range.resolutionHz / 4, rounds: 1, rangeHz: range.wide };
+  const [fine] = refineFrequencies(choice, [coarse], how).map((hz) => onSteps(hz, range.resolutionHz));
+  const runnable = fine !== undefined && task.allowed(fine) && isNew(fine, task.points, range.resolutionHz);
+  return runnable ? fine : coarse;
+}
+
 /** Whether a step very likely swings no more than a few times as far as any dwell so far. */
 function isGentle(
   setting: PlanSetting,
@@ -162,15 +176,8 @@ function isGentle(
   return (swings[Math.floor(0.8 * swings.length)] ?? 0) <= CLIMB * largest;
 }
 
-function unmeasured(
-  candidates: readonly number[],
-  points: readonly PlanPoint[],
-  resolutionHz: number,
-): number[] {
-  return candidates.filter((hz) =>
-    points.every((point) => Math.abs(point.driveHz - hz) > 0.5 * resolutionHz),
-  );
-}
+const isNew = (driveHz: number, points: readonly PlanPoint[], resolutionHz: number): boolean =>
+  points.every((point) => Math.abs(point.driveHz - driveHz) > 0.5 * resolutionHz);
 
 /** The wide step on a side of the peak where no dwell lies well out, or null where both sides have one. */
 function uncheckedFlank(

@@ -7,7 +7,7 @@ import { nextDwell } from './next-dwell.ts';
 import { expectedNoise, type PlanPoint, type PlanSetting } from './plan-points.ts';
 import { cameraForSteps, judgeStep, planRows } from './plan-rows.ts';
 import type { Plan, PlanInput, PlanRow, PlanTotals } from './plan-types.ts';
-import { situationsOf } from './plan-warnings.ts';
+import { planWarnings, situationsOf } from './plan-warnings.ts';
 import { makeRunSheet, type RunSheet } from './run-sheet.ts';
 import { type FrequencySource, startingKnowledge } from './starting-knowledge.ts';
 import { sweepAdvice } from './sweep-rate.ts';
@@ -65,13 +65,7 @@ export function makePlan(input: PlanInput): Plan {
         ? sweepAdvice(naturalHz, dampingRatio, range === undefined ? 0.4 * naturalHz : range[1] - range[0])
         : null,
     cautions: cautionsFor(situationsOf(input, rows)),
-    warnings: [
-      ...known.notes,
-      ...(sheet?.notes ?? []),
-      ...refusals(rows),
-      ...slowBeats(rows),
-      ...unknownSize(cloud, input),
-    ],
+    warnings: [...known.notes, ...(sheet?.notes ?? []), ...planWarnings(rows, cloud, input)],
   };
 }
 

@@ -76,7 +76,12 @@ export function makeRunSheet(task: RunSheetTask): RunSheet {
   };
   const coarse = chooseFrequencies(choice);
   const gridHz = (range.wide[1] - range.wide[0]) / Math.max(range.candidates.length - 1, 1);
-  const refined = refineFrequencies(choice, coarse, gridHz, [runnable[0]!, runnable.at(-1)!], 1);
+  const refined = refineFrequencies(choice, coarse, {
+    reachHz: gridHz,
+    toleranceHz: Math.max(range.resolutionHz, gridHz / 20) / 2,
+    rounds: 1,
+    rangeHz: [runnable[0]!, runnable.at(-1)!],
+  });
   // between two candidates that may be run there may be a peak that may not
   const inner = refined.map((hz, i) => (task.allowed(onSteps(hz, range.resolutionHz)) ? hz : coarse[i]!));
   const driveHz = distinctOnSteps([...wide, ...inner], range.resolutionHz).filter(task.allowed);

@@ -40,8 +40,9 @@ function best(
     count,
     leastSpacingHz: 0,
   };
-  const range = [candidates[0]!, candidates.at(-1)!] as const;
-  return refineFrequencies(choice, chooseFrequencies(choice), zeta / 10, range, 12);
+  const rangeHz = [candidates[0]!, candidates.at(-1)!] as const;
+  const how = { reachHz: zeta / 10, toleranceHz: 1e-7, rounds: 60, rangeHz };
+  return refineFrequencies(choice, chooseFrequencies(choice), how);
 }
 
 describe('most telling frequencies', () => {

@@ -54,4 +54,5 @@ export function fitDwells(points: readonly PlanPoint[], start: PlanFit | Simulat
 }
 
 /** Root mean square. */
-export const rms = (values: readonly number[]) => Math.sqrt(values.reduce((s, v) => s + v * v, 0) / values.length);
+export const rms = (values: readonly number[]) =>
+  Math.sqrt(values.reduce((s, v) => s + v * v, 0) / values.length);
