@@ -11,6 +11,7 @@ import { checkFrequency } from '../camera/slow-motion.ts';
 import { type Measured, measured, NOT_MEASURED } from '../numeric/measured.ts';
 import { localMmPerPx } from '../scale/perspective.ts';
 import type { PointPx } from '../scale/point-track.ts';
+import { fitSine } from '../sine/four-parameter.ts';
 import { lagDegrees } from '../sine/lag.ts';
 import type { Configuration, DwellSpec } from '../testfile/schema.ts';
 import { inWindow, type SeenSine, sineInWindow } from './dwell-at-frequency.ts';
@@ -183,6 +184,18 @@ function frequencyWarnings(clip: EvaluatedClip, spec: DwellSpec, judged: JudgedD
   return warning ? [warning.sentence] : [];
 }
 
+const CLEAR_MOTION = 10; // amplitude over its uncertainty from which a motion at another frequency is no accident
+
+/** Where nothing moves at the set frequency: a clear motion at another one, and what it may mean (slow motion not stated). */
+function elsewhere(clip: EvaluatedClip, spec: DwellSpec): string | null {
+  const rate = clip.tracks.facts.frameRate;
+  if (spec.driveHz === undefined || !(spec.driveHz > 0) || rate === null) return null;
+  const { timesS, displacementMm } = spec.window ? inWindow(clip.response, spec.window) : clip.response;
+  const free = fitSine(timesS, displacementMm);
+  if (!free || free.frequencyHz <= 0 || free.amplitude < CLEAR_MOTION * free.amplitudeU) return null;
+  return checkFrequency(free.frequencyHz, free.frequencyU ?? 0, spec.driveHz, rate).warning?.sentence ?? null;
+}
+
 function smearWarnings(clip: EvaluatedClip, judged: JudgedDwell, scale: number): string[] {
   const peakSpeedPxPerS = (2 * Math.PI * judged.frequencyHz * judged.amplitudeMm) / scale;
   const warning = smearWarning(peakSpeedPxPerS, clip.spec.exposure ?? null);
@@ -199,13 +212,15 @@ export function evaluateDwell(
   clip: EvaluatedClip,
 ): DwellResult {
   const judged = judgeClipDwell(clip, spec);
-  if ('error' in judged)
+  if ('error' in judged) {
+    const { error, verdict, lostFrames } = judged;
     return {
-      ...failedDwell(configuration, spec, judged.error),
+      ...failedDwell(configuration, spec, elsewhere(clip, spec) ?? error),
       clip: clip.spec.id,
-      verdict: judged.verdict,
-      lostFrames: judged.lostFrames,
+      verdict,
+      lostFrames,
     };
+  }
   const scale = mmPerPx(clip, clip.motion.responseRestPx);
   const driveSine = clip.drive ? sineInWindow(clip.drive, driveWindow(judged), judged.frequencyHz) : null;
   const drive = driveSine ? correctedDrive(clip, judged, driveSine) : null;
