@@ -1,97 +1,18 @@
-import { unknownFrequencyWarning } from '../camera/aliasing.ts';
 import type { BudgetEntry } from '../camera/amplitude-budget.ts';
-import { judgeShake, stillRmsPx } from '../camera/camera-shake.ts';
-import { compressionOf } from '../camera/codec-limit.ts';
-import { type CorrectedDwell, correctDwell, type FilmingFacts } from '../camera/correct-dwell.ts';
+import { type CorrectedDwell, correctDwell } from '../camera/correct-dwell.ts';
 import { geometryLines } from '../camera/geometry-lines.ts';
-import { smearWarning } from '../camera/marker-smear.ts';
-import { type RowReadout, readoutDirection, readoutFraction } from '../camera/rolling-shutter.ts';
-import type { RowFacts } from '../camera/row-correction.ts';
-import { checkFrequency } from '../camera/slow-motion.ts';
 import { type Measured, measured, NOT_MEASURED } from '../numeric/measured.ts';
-import { localMmPerPx } from '../scale/perspective.ts';
-import type { PointPx } from '../scale/point-track.ts';
-import { fitSine } from '../sine/four-parameter.ts';
 import { lagDegrees } from '../sine/lag.ts';
 import type { Configuration, DwellSpec } from '../testfile/schema.ts';
 import { inWindow, type SeenSine, sineInWindow } from './dwell-at-frequency.ts';
+import { elsewhere, frequencyWarnings, shakeWarnings, smearWarnings } from './dwell-cautions.ts';
 import { emptyDwell, failedDwell } from './dwell-without-clip.ts';
 import type { EvaluatedClip } from './evaluate-clips.ts';
+import { filmingFacts, mmPerPx, rowFacts, stillAmplitudePx } from './filming-of-dwell.ts';
 import { type JudgedDwell, judgeClipDwell } from './judge-clip-dwell.ts';
 import type { DwellResult } from './results.ts';
 
 const DEG_PER_RAD = 180 / Math.PI;
-
-function mmPerPx(clip: EvaluatedClip, restPx: PointPx): number {
-  const { toMm } = clip.geometry;
-  return toMm.kind === 'plane'
-    ? localMmPerPx(toMm, restPx, [clip.axis.directionX, clip.axis.directionY])
-    : toMm.mmPerPx;
-}
-
-function readout(clip: EvaluatedClip): RowReadout {
-  const { displayedWidth, displayedHeight, rotationDeg } = clip.tracks.facts;
-  return {
-    rowReadoutS: clip.spec.rowReadout ?? 0,
-    displayedWidthPx: displayedWidth,
-    displayedHeightPx: displayedHeight,
-    rotationDeg,
-  };
-}
-
-/** Where the markers are in the readout; the amplitude along it as a fraction of the rows. */
-function rowFacts(clip: EvaluatedClip, amplitudePx: number): RowFacts {
-  const { motion, axis, spec, tracks } = clip;
-  const shutter = readout(clip);
-  const [alongX, alongY] = readoutDirection(shutter.rotationDeg);
-  const rows = alongX === 0 ? tracks.facts.displayedHeight : tracks.facts.displayedWidth;
-  const along = Math.abs(alongX * axis.directionX + alongY * axis.directionY);
-  return {
-    rowReadoutS: spec.rowReadout ?? null,
-    undone: spec.rowReadout !== undefined,
-    amplitudeFraction: (amplitudePx * along) / rows,
-    fractionDifference: motion.driveRestPx
-      ? readoutFraction(shutter, ...motion.responseRestPx) - readoutFraction(shutter, ...motion.driveRestPx)
-      : null,
-  };
-}
-
-function filmingFacts(clip: EvaluatedClip, window: readonly [number, number]): FilmingFacts {
-  const { facts } = clip.tracks;
-  return {
-    frameRateHz: facts.frameRate ?? 1,
-    durationS: window[1] - window[0],
-    exposureS: clip.spec.exposure ?? null,
-    exposureUS: null,
-    stampJitterS: null, // stamps are each frame's own: their scatter is true motion of the shutter, not an error
-    stampQuantumS: facts.tickS,
-    compression: compressionOf(facts.codec),
-  };
-}
-
-/** Amplitude along the motion axis of something at rest, px; null where nothing at rest was followed. */
-function stillAmplitudePx(
-  clip: EvaluatedClip,
-  window: readonly [number, number],
-  frequencyHz: number,
-): number | null {
-  const { still, groundSubtracted } = clip.motion;
-  if (!still || groundSubtracted) return null;
-  const along = still.x.map(
-    (x, i) => x * clip.axis.directionX + (still.y[i] ?? Number.NaN) * clip.axis.directionY,
-  );
-  return (
-    sineInWindow({ timesS: still.timesS, displacementMm: along }, window, frequencyHz)?.amplitude ?? null
-  );
-}
-
-function shakeWarnings(clip: EvaluatedClip): string[] {
-  const { still, groundSubtracted } = clip.motion;
-  if (!still) return [];
-  const rms = Math.hypot(stillRmsPx(still.x) ?? 0, stillRmsPx(still.y) ?? 0);
-  const warning = judgeShake(rms, groundSubtracted);
-  return warning ? [warning.sentence] : [];
-}
 
 /** The part of the amplitude that belongs to this dwell alone, as a relative standard uncertainty. */
 function ownRelative(corrected: CorrectedDwell): number | null {
@@ -173,33 +94,6 @@ function seen(
     dof: Math.min(judged.dof, drive.dof),
     driveAmplitudePx: drivePx,
   };
-}
-
-function frequencyWarnings(clip: EvaluatedClip, spec: DwellSpec, judged: JudgedDwell): string[] {
-  const { value, u } = judged.measuredHz;
-  const rate = clip.tracks.facts.frameRate;
-  if (value === null || value <= 0 || rate === null) return [];
-  if (spec.driveHz === undefined) return [unknownFrequencyWarning(value, rate).sentence];
-  const { warning } = checkFrequency(value, u ?? 0, spec.driveHz, rate);
-  return warning ? [warning.sentence] : [];
-}
-
-const CLEAR_MOTION = 10; // amplitude over its uncertainty from which a motion at another frequency is no accident
-
-/** Where nothing moves at the set frequency: a clear motion at another one, and what it may mean (slow motion not stated). */
-function elsewhere(clip: EvaluatedClip, spec: DwellSpec): string | null {
-  const rate = clip.tracks.facts.frameRate;
-  if (spec.driveHz === undefined || !(spec.driveHz > 0) || rate === null) return null;
-  const { timesS, displacementMm } = spec.window ? inWindow(clip.response, spec.window) : clip.response;
-  const free = fitSine(timesS, displacementMm);
-  if (!free || free.frequencyHz <= 0 || free.amplitude < CLEAR_MOTION * free.amplitudeU) return null;
-  return checkFrequency(free.frequencyHz, free.frequencyU ?? 0, spec.driveHz, rate).warning?.sentence ?? null;
-}
-
-function smearWarnings(clip: EvaluatedClip, judged: JudgedDwell, scale: number): string[] {
-  const peakSpeedPxPerS = (2 * Math.PI * judged.frequencyHz * judged.amplitudeMm) / scale;
-  const warning = smearWarning(peakSpeedPxPerS, clip.spec.exposure ?? null);
-  return warning ? [warning.sentence] : [];
 }
 
 /**

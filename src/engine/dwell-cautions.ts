@@ -1,0 +1,47 @@
+import { unknownFrequencyWarning } from '../camera/aliasing.ts';
+import { judgeShake, stillRmsPx } from '../camera/camera-shake.ts';
+import { smearWarning } from '../camera/marker-smear.ts';
+import { checkFrequency } from '../camera/slow-motion.ts';
+import { fitSine } from '../sine/four-parameter.ts';
+import type { DwellSpec } from '../testfile/schema.ts';
+import { inWindow } from './dwell-at-frequency.ts';
+import type { EvaluatedClip } from './evaluate-clips.ts';
+import type { JudgedDwell } from './judge-clip-dwell.ts';
+
+/** Shake of the camera that no ground marker takes out. */
+export function shakeWarnings(clip: EvaluatedClip): string[] {
+  const { still, groundSubtracted } = clip.motion;
+  if (!still) return [];
+  const rms = Math.hypot(stillRmsPx(still.x) ?? 0, stillRmsPx(still.y) ?? 0);
+  const warning = judgeShake(rms, groundSubtracted);
+  return warning ? [warning.sentence] : [];
+}
+
+/** A measured frequency that is not the one set, or cannot be told from an alias. */
+export function frequencyWarnings(clip: EvaluatedClip, spec: DwellSpec, judged: JudgedDwell): string[] {
+  const { value, u } = judged.measuredHz;
+  const rate = clip.tracks.facts.frameRate;
+  if (value === null || value <= 0 || rate === null) return [];
+  if (spec.driveHz === undefined) return [unknownFrequencyWarning(value, rate).sentence];
+  const { warning } = checkFrequency(value, u ?? 0, spec.driveHz, rate);
+  return warning ? [warning.sentence] : [];
+}
+
+const CLEAR_MOTION = 10; // amplitude over its uncertainty from which a motion at another frequency is no accident
+
+/** Where nothing moves at the set frequency: a clear motion at another one, and what it may mean (slow motion not stated). */
+export function elsewhere(clip: EvaluatedClip, spec: DwellSpec): string | null {
+  const rate = clip.tracks.facts.frameRate;
+  if (spec.driveHz === undefined || !(spec.driveHz > 0) || rate === null) return null;
+  const { timesS, displacementMm } = spec.window ? inWindow(clip.response, spec.window) : clip.response;
+  const free = fitSine(timesS, displacementMm);
+  if (!free || free.frequencyHz <= 0 || free.amplitude < CLEAR_MOTION * free.amplitudeU) return null;
+  return checkFrequency(free.frequencyHz, free.frequencyU ?? 0, spec.driveHz, rate).warning?.sentence ?? null;
+}
+
+/** A marker that smears over many pixels in one exposure. */
+export function smearWarnings(clip: EvaluatedClip, judged: JudgedDwell, scale: number): string[] {
+  const peakSpeedPxPerS = (2 * Math.PI * judged.frequencyHz * judged.amplitudeMm) / scale;
+  const warning = smearWarning(peakSpeedPxPerS, clip.spec.exposure ?? null);
+  return warning ? [warning.sentence] : [];
+}
