@@ -20,7 +20,7 @@ import {
   verdictOn,
 } from './next-dwell-gain.ts';
 import type { PlanFit, PlanPoint, PlanSetting } from './plan-points.ts';
-import { planResponse } from './plan-response.ts';
+import { predictAmplitude } from './predicted-amplitude.ts';
 
 /** What the next dwell is chosen from. */
 export interface NextDwellTask {
@@ -52,15 +52,15 @@ export interface NextDwell {
 
 const FIT_NEEDS = 3;
 const LEAST_GAIN = 0.05;
-const CLIMB = 5; // before a fit: no step to a swing that is likely more than this many times the largest seen
+const CLIMB = 3; // before a fit: no step to a swing that may be more than this many times the largest so far
 const FLANK_HALF_BANDWIDTHS = 3; // a dwell beyond this on a side checks the model there
 
 /**
  * Proposes the dwell that narrows natural frequency and damping most, among those that the travel limit allows.
  *
  * Before anything is measured it is a dwell far below resonance; before a fit exists, the one that tells most on
- * average over all that the dwells so far leave possible, not climbing more than fivefold at once (common
- * practice, no source); with a fit, the one that tells most at the fit. When that is enough, a dwell on a flank
+ * average over all that the dwells so far leave possible, and never one that may (95 %) swing more than three
+ * times as far as any so far (common practice: the peak is approached in steps; no source); with a fit, the one that tells most at the fit. When that is enough, a dwell on a flank
  * that has none is proposed as a check of the model.
  */
 export function nextDwell(task: NextDwellTask): NextDwell {
@@ -90,7 +90,7 @@ export function nextDwell(task: NextDwellTask): NextDwell {
   const held = oscillators.map((oscillator) =>
     heldInformation(setting, cloud, points, oscillator, fitted ? 0 : 1),
   );
-  const steps = fitted ? runnable : runnable.filter((hz) => isGentle(setting, oscillators, points, hz));
+  const steps = fitted ? runnable : runnable.filter((hz) => isGentle(task, hz));
   const choice: FrequencyChoice = {
     setting,
     oscillators,
@@ -102,7 +102,7 @@ export function nextDwell(task: NextDwellTask): NextDwell {
     count: 1,
     leastSpacingHz: 0,
   };
-  const best = bestStep(choice, task, range);
+  const best = bestStep(choice, task, range, fitted);
   if (best === null)
     return nothing(before, false, 'Every step of the generator that could be run has been measured.');
   const change = expectedChange(choice, best, before);
@@ -149,31 +149,30 @@ function nothing(before: Spreads, enough: boolean, sentence: string): NextDwell 
 }
 
 /** The best candidate, moved to the best step of the generator near it where that may be run and is new. */
-function bestStep(choice: FrequencyChoice, task: NextDwellTask, range: FrequencyRange): number | null {
+function bestStep(
+  choice: FrequencyChoice,
+  task: NextDwellTask,
+  range: FrequencyRange,
+  fitted: boolean,
+): number | null {
   const [coarse] = chooseFrequencies(choice);
   if (coarse === undefined) return null;
   const reachHz = (range.wide[1] - range.wide[0]) / range.candidates.length;
   const how = { reachHz, toleranceHz: range.resolutionHz / 4, rounds: 1, rangeHz: range.wide };
   const [fine] = refineFrequencies(choice, [coarse], how).map((hz) => onSteps(hz, range.resolutionHz));
-  const runnable = fine !== undefined && task.allowed(fine) && isNew(fine, task.points, range.resolutionHz);
+  const runnable =
+    fine !== undefined &&
+    task.allowed(fine) &&
+    isNew(fine, task.points, range.resolutionHz) &&
+    (fitted || isGentle(task, fine));
   return runnable ? fine : coarse;
 }
 
-/** Whether a step very likely swings no more than a few times as far as any dwell so far. */
-function isGentle(
-  setting: PlanSetting,
-  oscillators: readonly Oscillator[],
-  points: readonly PlanPoint[],
-  driveHz: number,
-) {
+/** Whether a step swings, with 95 %, no more than a few times as far as any dwell so far. */
+function isGentle({ setting, cloud, points }: NextDwellTask, driveHz: number): boolean {
+  const predicted = predictAmplitude(setting.model, cloud, driveHz);
   const largest = Math.max(...points.map((point) => point.amplitudeMm));
-  const swings = oscillators
-    .map(
-      ({ gain, naturalHz, dampingRatio }) =>
-        gain * planResponse(setting.model, driveHz, naturalHz, dampingRatio).amplitude,
-    )
-    .sort((a, b) => a - b);
-  return (swings[Math.floor(0.8 * swings.length)] ?? 0) <= CLIMB * largest;
+  return predicted === null || predicted.upperMm <= CLIMB * largest;
 }
 
 const isNew = (driveHz: number, points: readonly PlanPoint[], resolutionHz: number): boolean =>

@@ -22,7 +22,7 @@ export interface PlanInput {
   readonly damping?: DampingGuess | null;
   /** Static gain, mm: static deflection, base amplitude, or what the model's gain is. */
   readonly gainMm?: Measured | null;
-  /** Dwells measured so far that count (none excluded). */
+  /** Dwells measured so far that count (none excluded); those without an amplitude above 0 teach nothing. */
   readonly points?: readonly PlanPoint[];
   /** Resonance fit of these points, where there is one. */
   readonly fit?: PlanFit | null;

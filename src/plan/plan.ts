@@ -27,7 +27,7 @@ const HIGHEST_SWEPT_DAMPING = 0.35; // beyond there is no peak worth sweeping th
  * Never throws for what a user can enter: where nothing can be planned `reason` says what is missing.
  */
 export function makePlan(input: PlanInput): Plan {
-  const points = input.points ?? [];
+  const points = (input.points ?? []).filter(isUsable);
   const known = cloudOf(input, points);
   if (known.cloud === null) return emptyPlan(known.reason, input);
   const { cloud } = known;
@@ -68,6 +68,10 @@ export function makePlan(input: PlanInput): Plan {
     warnings: [...known.notes, ...(sheet?.notes ?? []), ...planWarnings(rows, cloud, input)],
   };
 }
+
+/** A dwell that planning can learn from. */
+const isUsable = ({ driveHz, amplitudeMm }: PlanPoint): boolean =>
+  driveHz > 0 && amplitudeMm > 0 && Number.isFinite(driveHz * amplitudeMm);
 
 /** Whether a step stays below the travel limit; judged once for each frequency. */
 function allowance(input: PlanInput, cloud: KnowledgeCloud): (driveHz: number) => boolean {

@@ -42,12 +42,12 @@ describe('next dwell', () => {
     expect(next.sentence).toMatch(/Begin far below resonance/);
   });
 
-  it('one or two dwells: a step that narrows, not climbing more than fivefold at once', () => {
+  it('one or two dwells: a step that narrows, never one that may swing more than three times as far as any so far', () => {
     const points = exact([4]);
     const next = nextDwell(taskFor(points));
     expect(next.purpose).toBe('narrow');
     const likely = predictAmplitude(FORCE, taskFor(points).cloud, next.driveHz!)!;
-    expect(likely.medianMm).toBeLessThan(5 * points[0]!.amplitudeMm);
+    expect(likely.upperMm).toBeLessThanOrEqual(3 * points[0]!.amplitudeMm);
     expect(next.naturalHz.after!).toBeLessThan(next.naturalHz.before!);
     expect(nextDwell(taskFor(exact([4, 4.8]))).driveHz!).toBeGreaterThan(4.8);
   });

@@ -85,11 +85,11 @@ describe('goal: at most 0.7 of the uncertainty of an evenly spaced sheet (seeded
       const normal = seededNormal(1000 * damping + 1e5 * u);
       const planned: number[] = [];
       const sameSpan: number[] = [];
-      for (let run = 0; run < 24; run++) {
+      for (let run = 0; run < 12; run++) {
         const drawn = drawCase(damping, u, run, normal);
         const sheet = sheetOf(drawn);
-        planned.push(...errorsOf(sheet, drawn, 25, normal));
-        sameSpan.push(...errorsOf(even(sheet[0]!, sheet.at(-1)!), drawn, 25, normal));
+        planned.push(...errorsOf(sheet, drawn, 20, normal));
+        sameSpan.push(...errorsOf(even(sheet[0]!, sheet.at(-1)!), drawn, 20, normal));
       }
       expect(rms(planned) / rms(sameSpan)).toBeLessThan(0.7);
     },
@@ -99,11 +99,11 @@ describe('goal: at most 0.7 of the uncertainty of an evenly spaced sheet (seeded
     const normal = seededNormal(77);
     const planned: number[] = [];
     const wide: number[] = [];
-    for (let run = 0; run < 24; run++) {
+    for (let run = 0; run < 12; run++) {
       const drawn = drawCase(0.02, 0.01, run, normal);
-      planned.push(...errorsOf(sheetOf(drawn), drawn, 25, normal));
+      planned.push(...errorsOf(sheetOf(drawn), drawn, 20, normal));
       const guess = drawn.start.naturalHz.value;
-      wide.push(...errorsOf(even(0.8 * guess, 1.2 * guess), drawn, 25, normal));
+      wide.push(...errorsOf(even(0.8 * guess, 1.2 * guess), drawn, 20, normal));
     }
     expect(rms(planned) / rms(wide)).toBeLessThan(0.5);
   });
@@ -117,13 +117,13 @@ describe('goal: at most 0.7 of the uncertainty of an evenly spaced sheet (seeded
     const normal = seededNormal(7 + 1000 * damping + 1e5 * u);
     const planned: number[] = [];
     const sameSpan: number[] = [];
-    for (let run = 0; run < 14; run++) {
+    for (let run = 0; run < 10; run++) {
       const drawn = drawCase(damping, u, run, normal);
       const points = dwellByDwell(drawn, normal);
       const fit = fitDwells(points, drawn.rig);
       planned.push(fit === null ? drawn.start.naturalHz.u : fit.naturalHz - NATURAL_HZ);
       const sheet = sheetOf(drawn);
-      sameSpan.push(...errorsOf(even(sheet[0]!, sheet.at(-1)!), drawn, 25, normal));
+      sameSpan.push(...errorsOf(even(sheet[0]!, sheet.at(-1)!), drawn, 20, normal));
     }
     expect(rms(planned) / rms(sameSpan)).toBeLessThan(0.7);
   });
