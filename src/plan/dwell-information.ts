@@ -8,9 +8,11 @@ export interface Oscillator {
   readonly dampingRatio: number;
 }
 
-/** Places of the parameters in an information matrix; these are natural logarithms. */
+/** Place of the logarithm of the static gain in an information matrix. */
 export const LOG_GAIN = 0;
+/** Place of the logarithm of the natural frequency. */
 export const LOG_NATURAL = 1;
+/** Place of the logarithm of the damping ratio. */
 export const LOG_DAMPING = 2;
 /** Place of the lag's zero, in radians. */
 export const LAG_ZERO = 3;

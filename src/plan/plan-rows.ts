@@ -5,7 +5,7 @@ import { type KnowledgeCloud, quantileOf } from './knowledge-cloud.ts';
 import type { PlanInput, PlanRow } from './plan-types.ts';
 import { type PredictedAmplitude, predictAmplitude, relativeAmplitude } from './predicted-amplitude.ts';
 import { checkTravel, type TravelCheck } from './travel-limit.ts';
-import { overshootRatio, startRatioAfterStep, waitingTime } from './waiting-time.ts';
+import { overshootRatio, startRatioAfterStep, transientFromRest, waitingTime } from './waiting-time.ts';
 
 const LEFTOVER = 0.01;
 const AMPLITUDE_RELATIVE_U = 0.01;
@@ -71,9 +71,10 @@ export function planRows(
     const aboveLimit = travel.verdict === 'refused';
     const leadsUp = !cautioned && before > 0 && relative > before;
     cautioned ||= leadsUp;
-    // from rest the free motion is as large as the steady one, above resonance larger by the frequency ratio
     const startRatio =
-      before === 0 ? Math.max(1, driveHz / naturalHz) : startRatioAfterStep(before, relative);
+      before === 0
+        ? transientFromRest(driveHz / naturalHz, dampingRatio, null)
+        : startRatioAfterStep(before, relative);
     const wait = waitingTime({
       naturalHz,
       dampingRatio,

@@ -4,12 +4,12 @@ import { cloudFromFit } from './cloud-from-fit.ts';
 import { typicalOscillator, typicalPeak } from './design-space.ts';
 import { cloudFromKnowledge, type KnowledgeCloud, quantileOf } from './knowledge-cloud.ts';
 import { nextDwell } from './next-dwell.ts';
-import { expectedNoise, type PlanPoint, type PlanSetting } from './plan-points.ts';
+import { expectedNoise, type PlanFit, type PlanPoint, type PlanSetting } from './plan-points.ts';
 import { cameraForSteps, judgeStep, planRows } from './plan-rows.ts';
 import type { Plan, PlanInput, PlanRow, PlanTotals } from './plan-types.ts';
 import { planWarnings, situationsOf } from './plan-warnings.ts';
 import { makeRunSheet, type RunSheet } from './run-sheet.ts';
-import { type FrequencySource, startingKnowledge } from './starting-knowledge.ts';
+import { type FrequencySource, type StartingKnowledge, startingKnowledge } from './starting-knowledge.ts';
 import { sweepAdvice } from './sweep-rate.ts';
 
 export type { Plan, PlanInput, PlanRow, PlanTotals } from './plan-types.ts';
@@ -30,7 +30,7 @@ export function makePlan(input: PlanInput): Plan {
   const points = (input.points ?? []).filter(isUsable);
   const known = cloudOf(input, points);
   if (known.cloud === null) return emptyPlan(known.reason, input);
-  const { cloud } = known;
+  const { cloud, fit } = known;
   const setting = settingOf(input, cloud, points);
   const allowed = allowance(input, cloud);
 
@@ -44,7 +44,7 @@ export function makePlan(input: PlanInput): Plan {
     setting,
     cloud,
     points,
-    fit: input.fit ?? null,
+    fit,
     resolutionHz: positive(input.resolutionHz),
     allowed,
     ...(input.goal !== undefined && { goal: input.goal }),
@@ -87,14 +87,16 @@ function allowance(input: PlanInput, cloud: KnowledgeCloud): (driveHz: number) =
 }
 
 type Known =
-  | { readonly cloud: KnowledgeCloud; readonly notes: readonly string[] }
+  | { readonly cloud: KnowledgeCloud; readonly fit: PlanFit | null; readonly notes: readonly string[] }
   | { readonly cloud: null; readonly reason: string };
 
-/** All that is known: the fit where there is one, else starting knowledge joined with the dwells so far. */
+/** All that is known: the fit where it says more than the start, else starting knowledge joined with the dwells. */
 function cloudOf(input: PlanInput, points: readonly PlanPoint[]): Known {
-  if (input.fit != null) return { cloud: cloudFromFit(input.fit), notes: [] };
+  const fit = input.fit ?? null;
   const source = input.start ?? guessFromDwells(points);
   const { knowledge, reason } = startingKnowledge(source, input.damping ?? null);
+  if (fit !== null && (knowledge === null || isTelling(fit, knowledge)))
+    return { cloud: cloudFromFit(fit), fit, notes: [] };
   if (knowledge === null) return { cloud: null, reason };
   const guessed =
     input.start == null
@@ -102,8 +104,23 @@ function cloudOf(input: PlanInput, points: readonly PlanPoint[]): Known {
       : [];
   return {
     cloud: cloudFromKnowledge(input.model, knowledge, input.gainMm ?? null, points),
+    fit: null,
     notes: [...guessed, ...knowledge.notes],
   };
+}
+
+const TELLING_HALF_BANDWIDTHS = 0.3;
+const TELLING_DAMPING = 0.5; // of itself
+
+/** Whether a fit is worth planning from: as good as the start, or good beside its bandwidth. One of few dwells may not be. */
+function isTelling({ naturalHz, dampingRatio, covariance }: PlanFit, start: StartingKnowledge): boolean {
+  const uHz = Math.sqrt(covariance[4] ?? Number.POSITIVE_INFINITY);
+  const uDamping = Math.sqrt(covariance[8] ?? Number.POSITIVE_INFINITY) / dampingRatio;
+  const { low, high } = start.dampingRatio;
+  return (
+    uHz <= Math.max(start.naturalHz.u, TELLING_HALF_BANDWIDTHS * dampingRatio * naturalHz) &&
+    uDamping <= Math.max(Math.log(high / low), TELLING_DAMPING)
+  );
 }
 
 const ROUGH_RELATIVE_U = 0.15;

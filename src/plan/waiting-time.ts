@@ -60,19 +60,25 @@ export function waitingTime({
  *
  * @param frequencyRatio drive over natural frequency, above 0
  * @param dampingRatio in (0, 1)
- * @param steadyPhaseRad phase p of the steady motion cos(omega t - p) at the moment the drive starts; for a force
- *   that starts at its largest, p is the lag
- * Source: initial conditions x = v = 0 on steady plus free motion (Rao, Mechanical Vibrations, from memory).
+ * @param steadyPhaseRad phase p of the steady motion cos(omega t - p) at the moment the drive starts (for a force
+ *   that starts at its largest, p is the lag), or null for the phase that stirs up most
+ * Source: initial conditions x = v = 0 on steady plus free motion (Rao, Mechanical Vibrations, from memory); the
+ * largest over all phases is the larger eigenvalue of that quadratic form.
  */
 export function transientFromRest(
   frequencyRatio: number,
   dampingRatio: number,
-  steadyPhaseRad: number,
+  steadyPhaseRad: number | null,
 ): number {
+  const scale = 1 - dampingRatio ** 2;
+  if (steadyPhaseRad === null) {
+    const [a, b] = [1 / scale, frequencyRatio ** 2 / scale];
+    const shared = (frequencyRatio * dampingRatio) / scale;
+    return Math.sqrt((a + b) / 2 + Math.hypot((a - b) / 2, shared));
+  }
   const atStart = Math.cos(steadyPhaseRad);
-  const moving =
-    (frequencyRatio * Math.sin(steadyPhaseRad) + dampingRatio * atStart) / Math.sqrt(1 - dampingRatio ** 2);
-  return Math.hypot(atStart, moving);
+  const moving = frequencyRatio * Math.sin(steadyPhaseRad) + dampingRatio * atStart;
+  return Math.hypot(atStart, moving / Math.sqrt(scale));
 }
 
 /**

@@ -54,14 +54,3 @@ export function lineValue(line: StraightLine, x: number, options: BandOptions = 
       : uIntercept ** 2 + 2 * x * covariance + (x * uSlope) ** 2;
   return trendValue(x, line.intercept + line.slope * x, variance, line, options);
 }
-
-/**
- * Where a fitted line takes the wanted value, with the standard uncertainty to first order.
- * @returns null where the slope is within two standard uncertainties of zero, so that any x could be the answer
- */
-export function lineCrossing(line: StraightLine, wanted: number): { x: number; u: number | null } | null {
-  if (line.slope === 0 || (line.uSlope !== null && Math.abs(line.slope) < 2 * line.uSlope)) return null;
-  const x = (wanted - line.intercept) / line.slope;
-  const u = lineValue(line, x).u;
-  return { x, u: u === null ? null : u / Math.abs(line.slope) };
-}

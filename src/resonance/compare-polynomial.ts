@@ -1,5 +1,6 @@
 import { linearLeastSquares } from '../numeric/linear-algebra.ts';
 import { chiSquareCdf } from '../numeric/quantiles.ts';
+import { akaikeCorrected } from './akaike.ts';
 import { type BandOptions, type TrendValue, trendValue } from './compare-line-band.ts';
 import { SCATTER_SIGNIFICANCE } from './straight-line-york.ts';
 
@@ -39,7 +40,7 @@ export interface PolynomialTrend {
  * @param uY standard uncertainties above 0, or null: all points count alike
  * @param degree 0 or more
  * @returns null where there are fewer different x than coefficients
- * Source: weighted normal equations by QR; AICc by Hurvich and Tsai, Biometrika 76 (1989) 297 (from memory).
+ * Source: weighted least squares by QR; for the covariance JCGM 100:2008, annex H.3.
  */
 export function fitPolynomial(
   x: ArrayLike<number>,
@@ -81,25 +82,12 @@ export function fitPolynomial(
     dof,
     chi2: uY === null ? null : sum,
     chi2Probability,
-    aicc: correctedAkaike(sum, rows, columns, uY !== null),
+    aicc: akaikeCorrected(sum, rows, columns, uY === null ? 'scatter' : 'known'),
     residualSd: uY === null && variance !== null ? Math.sqrt(variance) : null,
     widenedBy: widen && variance !== null ? Math.sqrt(variance) : 1,
     coverageDof: fromScatter ? dof : null,
     xRange,
   };
-}
-
-/** An unknown residual variance counts as one more parameter. */
-function correctedAkaike(
-  sum: number,
-  points: number,
-  coefficients: number,
-  varianceKnown: boolean,
-): number | null {
-  const parameters = coefficients + (varianceKnown ? 0 : 1);
-  if (points - parameters - 1 <= 0 || (!varianceKnown && !(sum > 0))) return null;
-  const fit = varianceKnown ? sum : points * Math.log(sum / points);
-  return fit + 2 * parameters + (2 * parameters * (parameters + 1)) / (points - parameters - 1);
 }
 
 /** Value of a polynomial trend at x with its interval; {@link BandOptions} says of what. */

@@ -171,6 +171,14 @@ describe('plan of a configuration', () => {
     expect(plan.next!.enough).toBe(false);
   });
 
+  it('a fit of few dwells that tells less than the start does not take its place', () => {
+    const points = [1.5, 1.6, 1.7].map((driveHz) => ({ driveHz, amplitudeMm: 4, uAmplitudeMm: 0.1 }));
+    const poor = { gainMm: 2, naturalHz: 3, dampingRatio: 0.1, covariance: [1, 0, 0, 0, 1, 0, 0, 0, 0.04] };
+    expect(makePlan({ ...input, points, fit: poor }).naturalHz.value).toBeLessThan(2.2);
+    const good = { ...poor, covariance: [0.01, 0, 0, 0, 0.0004, 0, 0, 0, 0.0001] };
+    expect(makePlan({ ...input, points, fit: good }).naturalHz.value).toBeCloseTo(3, 2);
+  });
+
   it('a rig 2.5 u above the guess: climbs dwell by dwell to the limit, never past it', () => {
     const rig: SimulatedRig = {
       gainMm: 2,

@@ -47,6 +47,17 @@ describe('waiting time', () => {
     expect(transientFromRest(r, 0.02, lag)).toBeCloseTo(1.0002001, 6);
   });
 
+  it('identity: without a phase it is the largest over all phases', () => {
+    for (const [r, zeta] of [
+      [0.5, 0.02],
+      [1, 0.3],
+      [1.6, 0.1],
+    ] as const) {
+      const phases = Array.from({ length: 3600 }, (_, i) => transientFromRest(r, zeta, (i * Math.PI) / 1800));
+      expect(transientFromRest(r, zeta, null)).toBeCloseTo(Math.max(...phases), 5);
+    }
+  });
+
   it('identity: a step away from a large motion waits longer by its decay to the new one', () => {
     const still = waitingTime(CASE);
     const moving = waitingTime({ ...CASE, startRatio: startRatioAfterStep(9, 1) });

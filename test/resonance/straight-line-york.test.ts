@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { lineCrossing, lineValue } from '../../src/resonance/compare-line-band.ts';
+import { lineValue } from '../../src/resonance/compare-line-band.ts';
 import {
   fitStraightLine,
   type LinePoints,
@@ -206,15 +206,5 @@ describe('points that give no line', () => {
     expect(() => fitStraightLine({ x: [1, 2], y: [1] })).toThrow(/one length/);
     expect(() => fitStraightLine({ x: [1, 2], y: [1, Number.NaN] })).toThrow(/finite/);
     expect(() => fitStraightLine({ x: [1, 2], y: [1, 2], uY: [1, -1] })).toThrow(/negative/);
-  });
-});
-
-describe('reading a line backwards', () => {
-  it('gives the x of a wanted value with its uncertainty, and nothing where the slope may be zero', () => {
-    const line = lineOf({ x: [0, 2], y: [1, 5], uY: [0.3, 0.4] });
-    const crossing = lineCrossing(line, 3);
-    expect(crossing?.x).toBeCloseTo(1, 12);
-    expect(crossing?.u).toBeCloseTo(0.25 / 2, 12); // the mean of both points, u = hypot(0.3, 0.4) / 2, over the slope
-    expect(lineCrossing(lineOf({ x: [0, 1], y: [1, 1.1], uY: [0.3, 0.4] }), 3)).toBeNull();
   });
 });
