@@ -21,7 +21,7 @@ export async function runLoopback({ dist, files, openBrowser }: LoopbackRun): Pr
     host: { kind: 'loopback', nativeDialogs: false, program: 'Dwellbook' },
     dist,
     userFolder: defaultUserFolder(env),
-    demoFolder: join(dirname(dist), 'fixtures', 'demo'),
+    demoFolder: env['DWELLBOOK_DEMO'] ?? join(dirname(dist), 'fixtures', 'demo'),
     testsFolder,
     browseRoots: [process.cwd(), ...files.map((file) => dirname(file))],
   });

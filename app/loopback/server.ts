@@ -16,6 +16,7 @@ import { takeUpload } from './upload.ts';
 
 const LARGEST_CALL_BYTES = 16 * 1024 * 1024;
 const MOST_EVENT_STREAMS = 8;
+const LONGEST_LEFT_UNREAD_BYTES = 256 * 1024 * 1024;
 
 /** What the loopback host serves, and how it ends. */
 export interface LoopbackParts {
@@ -145,7 +146,7 @@ export class LoopbackServer {
     } catch (error) {
       if (!(error instanceof InputError) && !(error instanceof CancelledError)) throw error;
       answerJson(response, 422, toFailure(error));
-      request.destroy();
+      leaveUnread(request);
     }
   }
 
@@ -161,4 +162,15 @@ export class LoopbackServer {
       leave();
     });
   }
+}
+
+/** Lets the rest of a refused body pass, so that its sender can read the answer; a very long one is cut off. */
+function leaveUnread(request: IncomingMessage): void {
+  let bytes = 0;
+  request.on('data', (chunk: Buffer) => {
+    bytes += chunk.length;
+    if (bytes > LONGEST_LEFT_UNREAD_BYTES) request.destroy();
+  });
+  request.on('error', () => undefined);
+  request.resume();
 }

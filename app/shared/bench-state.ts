@@ -1,3 +1,4 @@
+import type { ConfigurationPlan } from '../../src/engine/plan-test.ts';
 import type { Results } from '../../src/engine/results.ts';
 import type { TestFile } from '../../src/testfile/schema.ts';
 import type { Preferences } from './preferences.ts';
@@ -13,6 +14,8 @@ export interface BenchState {
   readonly history: { readonly undo: string | null; readonly redo: string | null };
   /** Results for the test as it stands: dwells whose inputs changed since they were measured are not in it. */
   readonly results: Results | null;
+  /** Run sheet advice of each configuration; null until it has been worked out. */
+  readonly plans: readonly ConfigurationPlan[] | null;
   /** Clips whose motion record can be asked for. */
   readonly tracked: readonly string[];
   /** Clips whose file is not where the test file says. */

@@ -45,6 +45,7 @@ const EMPTY: PartOfState = {
   save: { status: 'saved', atMs: null, error: null },
   history: { undo: null, redo: null },
   results: null,
+  plans: null,
   tracked: [],
   missing: [],
   job: null,
@@ -71,6 +72,9 @@ export class Bench {
       (session, results) => {
         session.resultsChanged();
         if (this.#session === session) this.#patch({ results });
+      },
+      (session, plans) => {
+        if (this.#session === session) this.#patch({ plans });
       },
       (error) =>
         this.#notice({ level: 'error', text: error instanceof Error ? error.message : String(error) }),
@@ -148,6 +152,12 @@ export class Bench {
       const bytes = await this.#parts.evaluatingEngine.call('motion', { clip });
       if (!bytes) throw new InputError(`The clip "${clip}" has not been measured with these markers yet.`);
       return bytes;
+    },
+
+    report: async () => {
+      const session = this.#need();
+      await this.#results.settled();
+      return this.#parts.evaluatingEngine.call('report', { test: session.test });
     },
 
     listFolder: ({ path }) => listFolder(path, this.#browseRoots()),

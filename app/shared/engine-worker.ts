@@ -1,4 +1,5 @@
 import { parentPort } from 'node:worker_threads';
+import { planTest } from '../../src/engine/plan-test.ts';
 import { trackTest } from '../../src/engine/track-test.ts';
 import { findClips } from '../../src/testfile/find-clips.ts';
 import { ClipReader, clipView } from './clip-reader.ts';
@@ -30,6 +31,8 @@ serveEngine(parentPort, {
     return null;
   },
   evaluate: async ({ test, clips: keyed }) => session.evaluate(test, keyed),
+  plan: async ({ test, results }) => planTest(test, results),
+  report: async ({ test }) => session.report(test),
   motion: async ({ clip }) => session.motion(clip),
   findClips: async ({ folder, wanted }, { signal }) => findClips(folder, wanted, { signal }),
 });

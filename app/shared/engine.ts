@@ -1,4 +1,5 @@
 import type { ClipOutcome } from '../../src/engine/clip-tracks.ts';
+import type { ConfigurationPlan } from '../../src/engine/plan-test.ts';
 import type { MeasureProgress } from '../../src/engine/progress.ts';
 import type { Results } from '../../src/engine/results.ts';
 import type { FoundClip, WantedClip } from '../../src/testfile/find-clips.ts';
@@ -54,6 +55,14 @@ export interface EngineCalls {
     answer: EvaluationAnswer;
     progress: never;
   };
+  /** Run sheet advice of every configuration, from what is known of the test so far. */
+  plan: {
+    args: { test: TestFile; results: Results };
+    answer: readonly ConfigurationPlan[];
+    progress: never;
+  };
+  /** The report of the test as of the last evaluation, as one HTML file. */
+  report: { args: { test: TestFile }; answer: string; progress: never };
   /** The motion record of a clip as of the last evaluation, packed; null where it has none. */
   motion: { args: { clip: string }; answer: Uint8Array | null; progress: never };
   findClips: {

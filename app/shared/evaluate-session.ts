@@ -4,6 +4,8 @@ import { keptDwell } from '../../src/engine/dwell-without-clip.ts';
 import { evaluateTest } from '../../src/engine/evaluate-test.ts';
 import { fitConfiguration } from '../../src/engine/fit-configuration.ts';
 import type { DwellResult, Results } from '../../src/engine/results.ts';
+import { InputError } from '../../src/errors.ts';
+import { reportHtml } from '../../src/report/report-html.ts';
 import type { TestFile } from '../../src/testfile/schema.ts';
 import type { EvaluationAnswer, KeyedClip } from './engine.ts';
 import { packTrack } from './tracks-bytes.ts';
@@ -13,6 +15,7 @@ export class EvaluatingSession {
   readonly #held = new Map<string, ClipOutcome>();
   #outcomes: ReadonlyMap<string, ClipOutcome> = new Map();
   #displacements: ReadonlyMap<string, Float64Array> = new Map();
+  #results: Results | null = null;
 
   hold(tracks: readonly (readonly [string, ClipOutcome])[]): void {
     for (const [key, outcome] of tracks) this.#held.set(key, outcome);
@@ -32,7 +35,16 @@ export class EvaluatingSession {
     const { results, displacements } = evaluateTest(test, outcomes);
     this.#outcomes = outcomes;
     this.#displacements = displacements;
-    return { results: withKept(test, results, outcomes), wanting: null };
+    this.#results = withKept(test, results, outcomes);
+    return { results: this.#results, wanting: null };
+  }
+
+  /** The report of the test as of the last evaluation. Throws InputError before there was one. */
+  report(test: TestFile): string {
+    if (!this.#results)
+      throw new InputError('There is nothing to report yet: measure or type a dwell first.');
+    const [outcomes, displacements] = [this.#outcomes, this.#displacements];
+    return reportHtml(test, { results: this.#results, displacements, outcomes });
   }
 
   /** The motion record of a clip as of the last evaluation; null where it has none. */

@@ -70,6 +70,9 @@ export const operations = {
   /** The motion record of a measured clip, packed by `tracks-bytes.ts`. */
   tracks: operation<Uint8Array>()(z.strictObject({ clip: id })),
 
+  /** The report as one HTML file. */
+  report: operation<string>()(nothing),
+
   /** Folders and openable files of one folder, for the page's own chooser. */
   listFolder: operation<FolderListing>()(z.strictObject({ path: path.optional() })),
   /** Shows the system's dialog; null when it was cancelled. */

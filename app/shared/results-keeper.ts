@@ -1,3 +1,4 @@
+import type { ConfigurationPlan } from '../../src/engine/plan-test.ts';
 import type { Results } from '../../src/engine/results.ts';
 import type { Engine } from './engine.ts';
 import type { TestSession } from './test-session.ts';
@@ -6,6 +7,7 @@ import type { TestSession } from './test-session.ts';
 export class ResultsKeeper {
   readonly #engine: Engine;
   readonly #onResults: (session: TestSession, results: Results) => void;
+  readonly #onPlans: (session: TestSession, plans: readonly ConfigurationPlan[]) => void;
   readonly #onTrouble: (error: unknown) => void;
   #wanted: TestSession | null = null;
   #running: Promise<void> | null = null;
@@ -13,14 +15,16 @@ export class ResultsKeeper {
   constructor(
     engine: Engine,
     onResults: (session: TestSession, results: Results) => void,
+    onPlans: (session: TestSession, plans: readonly ConfigurationPlan[]) => void,
     onTrouble: (error: unknown) => void,
   ) {
     this.#engine = engine;
     this.#onResults = onResults;
+    this.#onPlans = onPlans;
     this.#onTrouble = onTrouble;
   }
 
-  /** Says that the test or its tracks changed. */
+  /** Says that the test or its tracks changed. Plans follow when no further change is waiting. */
   refresh(session: TestSession): void {
     this.#wanted = session;
     this.#running ??= this.#run().finally(() => {
@@ -28,7 +32,7 @@ export class ResultsKeeper {
     });
   }
 
-  /** Done when the results are in step with the last change told. */
+  /** Done when the evaluation that is under way has come to its end. */
   async settled(): Promise<void> {
     await this.#running;
   }
@@ -43,6 +47,7 @@ export class ResultsKeeper {
         session.measured.setResults(test, results);
         // Shown although a change may have come meanwhile: the next turn follows at once.
         this.#onResults(session, results);
+        if (this.#wanted === null) this.#onPlans(session, await this.#engine.call('plan', { test, results }));
       } catch (error) {
         this.#onTrouble(error);
       }

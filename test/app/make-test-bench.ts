@@ -26,6 +26,7 @@ export const SMALL_CLIP = {
 export function fittingEngine(): FakeEngine {
   return new FakeEngine({
     evaluate: ({ test }) => ({ results: fitTest(test), wanting: null }),
+    plan: () => [],
     probe: () => SMALL_CLIP,
   });
 }

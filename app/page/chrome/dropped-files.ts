@@ -10,7 +10,7 @@ export async function droppedFiles(transfer: DataTransfer): Promise<Dropped> {
   const entries = [...transfer.items]
     .map((item) => item.webkitGetAsEntry())
     .filter((entry) => entry !== null);
-  if ('dwellbook' in window) return { files: whole, folder: null };
+  if ('dwellbook' in window || entries.length === 0) return { files: whole, folder: null };
   const files: File[] = [];
   for (const entry of entries) await collect(entry, files);
   const folder = entries.find((entry) => entry.isDirectory)?.name ?? null;

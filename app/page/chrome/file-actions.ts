@@ -67,6 +67,11 @@ export async function takeIn(paths: readonly string[]): Promise<void> {
 
 /** Takes in dropped files, copying them to the host where it cannot reach them. */
 export async function takeInFiles(files: readonly File[], folder: string | null): Promise<void> {
+  const inBrowser = bench.value?.host.kind === 'loopback';
+  if (inBrowser && files.some((file) => file.name.endsWith('.dwellbook'))) {
+    notify('caution', 'A browser does not tell where a dropped file lies: open the test with "Open test …".');
+    return;
+  }
   try {
     const paths = await client.pathsOf(files, folder, (text) => notify('info', text));
     if (paths.length > 0) await takeIn(paths);

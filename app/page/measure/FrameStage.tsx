@@ -63,6 +63,7 @@ export function FrameStage() {
       role="application"
       aria-label={stageLabel()}
       aria-describedby="stage-help"
+      data-picture={clipView.value ? `${clipView.value.width}x${clipView.value.height}` : undefined}
       onKeyDown={stageKeys}
       onBlur={() => void settle()}
     >

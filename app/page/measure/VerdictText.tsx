@@ -48,7 +48,10 @@ function Said({ result }: { result: DwellResult }) {
           {lag.value !== null && `, lag ${withUncertainty(lag.value, lag.u)}°`}
         </p>
       )}
-      <p class={tone}>{result.error ?? result.sentence}</p>
+      <p class={tone}>
+        {result.error ??
+          (result.sentence === '' ? `${verdict[0]?.toUpperCase()}${verdict.slice(1)}.` : result.sentence)}
+      </p>
       {result.warnings.map((warning) => (
         <p key={warning} class="soft">
           {warning}

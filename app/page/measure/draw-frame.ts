@@ -85,7 +85,7 @@ function drawScaleLine(context: CanvasRenderingContext2D, scene: Scene): void {
   edged(context, path, ROLE_COLOURS['scale'] ?? '', 1.4);
   if (!scene.scaleText) return;
   context.textAlign = 'center';
-  text(context, scene.scaleText, (from[0] + to[0]) / 2, (from[1] + to[1]) / 2 + 1.4 * scene.rem, '#fff');
+  text(context, scene.scaleText, (from[0] + to[0]) / 2, Math.max(from[1], to[1]) + 2.6 * scene.rem, '#fff');
   context.textAlign = 'start';
 }
 

@@ -106,10 +106,14 @@ function drawScales(
   context.textBaseline = 'middle';
   const step = niceStep(reach);
   for (let value = -Math.floor(reach / step) * step; value <= reach; value += step)
-    context.fillText(`${Number(value.toPrecision(6))}`, STRIP_LEFT - 5, (main / 2) * (1 - value / reach));
+    context.fillText(
+      `${Number(value.toPrecision(6))}`,
+      STRIP_LEFT - 5,
+      Math.max(scene.rem * 0.5, (main / 2) * (1 - value / reach)),
+    );
   context.textAlign = 'left';
   context.textBaseline = 'alphabetic';
-  context.fillText('mm', 2, scene.rem);
+  context.fillText('mm', 2, main / 2 - 1.2 * scene.rem);
   const stepS = niceStep((scene.toS - scene.fromS) / 2.5);
   for (let t = Math.ceil(scene.fromS / stepS) * stepS; t <= scene.toS; t += stepS) {
     const x = columnOf(t, scene, size);

@@ -1,5 +1,5 @@
 import type { ResonanceResult } from '../../../src/engine/results.ts';
-import { significant, withUncertainty } from '../../../src/report/format-number.ts';
+import { decimalsFor, significant, withUncertainty } from '../../../src/report/format-number.ts';
 import { amplitudeUnit } from '../format/amplitude.ts';
 import { quantitiesOf } from './quantities.ts';
 
@@ -25,11 +25,7 @@ export function ParameterTable({ fit }: { fit: ResonanceResult }) {
               <th scope="row">{name}</th>
               <td>{withUncertainty(of.value, of.u)}</td>
               <td>{unit}</td>
-              <td>
-                {interval
-                  ? interval.map((each) => (each === null ? 'open' : significant(each, 5))).join(' to ')
-                  : ''}
-              </td>
+              <td>{interval ? interval.map((each) => endText(each, of.u)).join(' to ') : ''}</td>
             </tr>
           ))}
         </tbody>
@@ -61,4 +57,10 @@ export function ParameterTable({ fit }: { fit: ResonanceResult }) {
       )}
     </>
   );
+}
+
+/** An end of an interval, rounded as the uncertainty asks; an end that is not known is open. */
+function endText(end: number | null, u: number | null): string {
+  if (end === null) return 'open';
+  return u === null ? significant(end, 5) : end.toFixed(decimalsFor(u));
 }

@@ -62,7 +62,7 @@ function residualPlot(parts: ResponseParts): Plot {
     .map((each) => ({
       x: each.driveHz,
       y: (each.amplitude - interpolated(curve?.driveHz ?? [], curve?.amplitude ?? [], each.driveHz)) * factor,
-      u: each.amplitudeU === null ? null : each.amplitudeU * factor,
+      u: each.independentU === null ? null : each.independentU * factor,
       name: each.id,
     }));
   const ends = [curve?.driveHz[0] ?? 0, curve?.driveHz.at(-1) ?? 1];

@@ -7,6 +7,8 @@ export interface ResponsePoint {
   /** mm zero-to-peak, or response over drive. */
   readonly amplitude: number;
   readonly amplitudeU: number | null;
+  /** What of it is not shared with the other dwells: what the fit weighs by. */
+  readonly independentU: number | null;
   readonly lagDeg: number | null;
   readonly lagU: number | null;
   readonly excluded: boolean;
@@ -30,6 +32,7 @@ export function responsePoints(
       driveHz,
       amplitude: size.value,
       amplitudeU: size.u,
+      independentU: asGain ? size.u : each.independentU,
       lagDeg: each.lag.value,
       lagU: each.lag.u,
       excluded: each.excluded !== null,

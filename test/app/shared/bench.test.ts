@@ -127,6 +127,7 @@ describe('results', () => {
     let broken = true;
     const fitting = fittingEngine();
     const engine = new FakeEngine({
+      plan: () => [],
       evaluate: (args) => {
         if (broken) throw new Error('worker stopped');
         return fitting.call('evaluate', args);
@@ -188,6 +189,7 @@ describe('taking in', () => {
   it('a clip that cannot be read is refused and the others are taken', async () => {
     await made.end();
     const engine = new FakeEngine({
+      plan: () => [],
       evaluate: (args) => fittingEngine().call('evaluate', args),
       probe: async ({ path: clip }) => {
         const { InputError } = await import('../../../src/errors.ts');
