@@ -1,4 +1,5 @@
 import type { ClipInfo } from './clip-info.ts';
+import { decoderThreadOptions } from './decoder-threads.ts';
 import { everyFrameOptions } from './every-frame-options.ts';
 import type { FfmpegPass } from './ffmpeg-arguments.ts';
 import type { Ffmpeg } from './find-ffmpeg.ts';
@@ -72,7 +73,7 @@ export function decodingPass(
     inputOptions: [
       '-noautorotate',
       '-copyts',
-      ...['-threads', '2'],
+      ...decoderThreadOptions(),
       ...(parts.strict ? ['-err_detect:v', 'explode'] : []),
       ...(parts.onlyKeyFrames ? ['-skip_frame', 'nokey'] : []),
       ...(parts.seek ? seekOptions(clip, range.first) : []),

@@ -33,6 +33,9 @@ export async function decodeRegions(
     throw new Error('All regions of one decoding pass must have the same size.');
   }
   const range = frameRange(clip, options.fromS, options.maxFrames);
+  if (range.first >= range.end) {
+    return { delivered: 0, lostFrames: [], doubtfulFrames: [], regions: fitted, complaints: [] };
+  }
   const ffmpeg = options.ffmpeg ?? (await findFfmpeg());
   for (const attempt of attempts(range)) {
     const result = await onePass({ clip, regions: fitted, range, onFrame, options, ffmpeg }, attempt);
@@ -109,13 +112,14 @@ async function onePass(job: Job, attempt: Attempt): Promise<DecodeResult | 'begi
   const result = await runFfmpeg(ffmpeg.path, ffmpegArguments(decodingPass(clip, ffmpeg, range, parts)), {
     ...(options.signal ? { signal: options.signal } : {}),
     ...(options.stallS ? { stallS: options.stallS } : {}),
+    bulk: true,
     onOutput: (chunk) => {
       reader.push(chunk);
       return !(enough || tooLate);
     },
   });
   if (result.reason === 'cancelled') throw new CancelledError();
-  const gaveNothing = delivered === 0 && range.end > range.first && !enough;
+  const gaveNothing = delivered === 0;
   const endedItself = result.reason === 'finished' || result.reason === 'failed';
   if (tooLate || (gaveNothing && endedItself && !attempt.isLast)) return 'begins too late';
   if (gaveNothing || !(enough || endedItself)) throw new InputError(endedBadly(clip.path, result, delivered));

@@ -79,10 +79,11 @@ export function ffmpegCandidates(env: Readonly<Record<string, string | undefined
 /** The ffmpeg at a path, or one phrase saying why it is not one. */
 async function askVersion(path: string, origin: FfmpegOrigin): Promise<Ffmpeg | string> {
   let text = '';
+  const decoder = new TextDecoder();
   const result = await runFfmpeg(path, ['-version'], {
     stallS: VERSION_STALL_S,
     onOutput: (chunk) => {
-      text += chunk.toString('utf8');
+      text += decoder.decode(chunk, { stream: true });
       return text.length < LONGEST_VERSION_TEXT;
     },
   });

@@ -1,4 +1,5 @@
 import type { ClipContainer } from './clip-info.ts';
+import { decoderThreadOptions } from './decoder-threads.ts';
 import { everyFrameOptions } from './every-frame-options.ts';
 import { ffmpegArguments } from './ffmpeg-arguments.ts';
 import type { Ffmpeg } from './find-ffmpeg.ts';
@@ -75,7 +76,7 @@ export function listDecodedFrames(
   options: RunOptions,
 ): Promise<ListingPass> {
   const parts = {
-    inputOptions: ['-noautorotate', '-copyts', '-threads', '2'],
+    inputOptions: ['-noautorotate', '-copyts', ...decoderThreadOptions()],
     filters: ['crop=2:2:0:0'],
     outputOptions: [...everyFrameOptions(ffmpeg, timeBase), '-c:v', 'rawvideo', '-f', 'framecrc'],
   };

@@ -1,5 +1,6 @@
-import { spawn } from 'node:child_process';
+import { type ChildProcess, spawn } from 'node:child_process';
 import { LineTail } from './line-tail.ts';
+import { openOutputChannel } from './output-channel.ts';
 import { DEFAULT_STALL_S, StallWatchdog } from './stall-watchdog.ts';
 import { leaveNoOrphan, stopProcess } from './stop-process.ts';
 
@@ -41,7 +42,9 @@ export interface RunOptions {
    * Receives standard output piece by piece, synchronously; the piece may be reused afterwards. Returning false
    * stops the run; throwing stops it too, and the error is passed on once the process has ended.
    */
-  readonly onOutput?: (chunk: Buffer) => unknown;
+  readonly onOutput?: (chunk: Uint8Array) => unknown;
+  /** Expect megabytes of output: they are taken in over a channel that costs less for each. */
+  readonly bulk?: boolean;
   /** Receives each line of standard error. */
   readonly onLine?: (line: string) => void;
   /** Time without any output after which the run is given up, s; 30 where absent. */
@@ -73,26 +76,8 @@ export async function runFfmpeg(
   });
   if (cause !== null) return ended(null, null, []);
 
-  const child = spawn(executable, args, { stdio: ['ignore', 'pipe', 'pipe'], windowsHide: true });
-  leaveNoOrphan(child);
-  const stop = (why: EndReason): void => {
-    if (cause !== null) return; // the first reason counts, and asking once is enough
-    cause = why;
-    stopProcess(child);
-    if (child.exitCode !== null || child.signalCode !== null) letGo();
-  };
-  // A process of its own that an ended program left behind may hold the pipes open: do not wait for it.
-  const letGo = (): void => {
-    child.stdout.destroy();
-    child.stderr.destroy();
-  };
-  const cancel = (): void => stop('cancelled');
-  options.signal?.addEventListener('abort', cancel, { once: true });
-  const watchdog = new StallWatchdog(options.stallS ?? DEFAULT_STALL_S, () => stop('stalled'));
-  const stderr = new LineTail(KEPT_LINES, options.onLine);
-
   let thrown: { readonly error: unknown } | null = null;
-  child.stdout.on('data', (chunk: Buffer) => {
+  const receive = (chunk: Uint8Array): void => {
     watchdog.alive();
     if (cause !== null) return; // drained, so that the process is not blocked on its way out
     try {
@@ -101,22 +86,51 @@ export async function runFfmpeg(
       thrown = { error };
       stop('stopped');
     }
+  };
+  const channel = options.bulk ? await openOutputChannel(receive) : null;
+  const child: ChildProcess = spawn(executable, args, {
+    stdio: ['ignore', channel?.childEnd ?? 'pipe', 'pipe'],
+    windowsHide: true,
   });
-  child.stderr.on('data', (chunk: Buffer) => {
-    watchdog.alive();
-    stderr.push(chunk);
-  });
+  channel?.handedOver();
+  leaveNoOrphan(child);
+  child.stdout?.on('data', receive);
+  // A process of its own that an ended program left behind may hold the pipes open: do not wait for it.
+  const letGo = (): void => {
+    child.stdout?.destroy();
+    child.stderr?.destroy();
+    channel?.letGo();
+  };
+  const stop = (why: EndReason): void => {
+    if (cause !== null) return; // the first reason counts, and asking once is enough
+    cause = why;
+    stopProcess(child);
+    if (child.exitCode !== null || child.signalCode !== null) letGo();
+  };
   child.once('exit', () => {
     if (cause !== null) letGo();
   });
+  const watchdog = new StallWatchdog(options.stallS ?? DEFAULT_STALL_S, () => stop('stalled'));
+  const stderr = new LineTail(KEPT_LINES, options.onLine);
+  child.stderr?.on('data', (chunk: Buffer) => {
+    watchdog.alive();
+    stderr.push(chunk);
+  });
+  const cancel = (): void => stop('cancelled');
+  if (options.signal?.aborted) cancel();
+  options.signal?.addEventListener('abort', cancel, { once: true });
 
   const result = await new Promise<FfmpegResult>((resolve) => {
     child.once('error', (error) => {
       if (child.pid !== undefined) return; // a signal that could not be sent; the end is still to come
-      cause ??= 'not-started';
+      cause = 'not-started';
+      letGo();
       resolve(ended(null, null, [error.message]));
     });
-    child.once('close', (exitCode, signal) => resolve(ended(exitCode, signal, stderr.end())));
+    child.once('close', async (exitCode, signal) => {
+      await channel?.ended;
+      resolve(ended(exitCode, signal, stderr.end()));
+    });
   });
   watchdog.end();
   options.signal?.removeEventListener('abort', cancel);

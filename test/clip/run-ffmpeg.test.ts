@@ -7,8 +7,10 @@ import { ffmpeg } from '../helpers/make-clip.ts';
 
 describe('one result shape for every end', () => {
   test('a good end', async () => {
-    const pieces: Buffer[] = [];
-    const result = await runFfmpeg(ffmpeg.path, ['-version'], { onOutput: (piece) => pieces.push(piece) });
+    const pieces: Uint8Array[] = [];
+    const result = await runFfmpeg(ffmpeg.path, ['-version'], {
+      onOutput: (piece) => pieces.push(piece.slice()),
+    });
     expect(result).toMatchObject({ reason: 'finished', exitCode: 0, signal: null });
     expect(Buffer.concat(pieces).toString()).toContain('ffmpeg version');
   });
