@@ -8,6 +8,8 @@ import { asCore, growCore, type SteadyCore, sharpened } from './steady-core.ts';
 const SEED_PERIODS = 5;
 const FEWEST_PERIODS = 5;
 const MOST_SEEDS = 600;
+// A stretch this many times a seed's length is taken for a dwell while others are still being looked for.
+const SOLID_SEEDS = 2;
 // A stretch may depart this much from one sine; a dwell's transient must have fallen to it by the end.
 const TOLERANCE = 0.03;
 // A stretch shorter than this share of the usual one is a passing moment of a transient.
@@ -23,24 +25,27 @@ const SAME_MOTION = 0.15;
 export function steadyCores(samples: Samples, settles: boolean): SteadyCore[] {
   const rough: SteadyCore[] = [];
   for (const seed of seeds(samples)) {
-    if (rough.some((core) => seed.fromS < core.toS && seed.toS > core.fromS)) continue;
-    const core = growCore(samples, seed, freeAround(samples, rough, seed), TOLERANCE);
+    // a seed across a change grows little and must not keep the ones beside it from growing
+    const solid = rough.filter((core) => core.toS - core.fromS > SOLID_SEEDS * (seed.toS - seed.fromS));
+    if (solid.some((core) => seed.fromS < core.toS && seed.toS > core.fromS)) continue;
+    const core = growCore(samples, seed, freeAround(samples, solid, seed), TOLERANCE);
     if (periodsOf(core) >= FEWEST_PERIODS) rough.push(core);
   }
   // a seed across a change may have taken a corner from the dwell beside it: the longer ones take theirs back
   const fixed: SteadyCore[] = [];
   for (const core of rough.sort((a, b) => b.toS - b.fromS - (a.toS - a.fromS))) {
-    const left = remaining(samples, core, fixed);
+    const left = remaining(core, fixed);
     if (left === null) continue;
     fixed.push(growCore(samples, left, freeAround(samples, fixed, left), TOLERANCE));
   }
-  const settled = settles ? fixed.filter((core) => hasSettled(samples, core)) : fixed;
+  const ended = fixed.map((core) => sharpened(samples, core));
+  const settled = settles ? ended.filter((core) => hasSettled(samples, core)) : ended;
   const durations = settled.map((core) => core.toS - core.fromS).sort((a, b) => a - b);
   const usual = durations[durations.length >> 1] ?? 0;
   const cores = settled
     .filter((core) => core.toS - core.fromS >= SHORTEST_SHARE * usual)
     .sort((a, b) => a.fromS - b.fromS);
-  return merged(samples, cores).map((core) => sharpened(samples, core));
+  return merged(samples, cores);
 }
 
 function periodsOf(core: SteadyCore): number {
@@ -72,7 +77,7 @@ function freeAround(samples: Samples, cores: readonly SteadyCore[], seed: Steady
 }
 
 /** What is left of a stretch beside those fixed already; null where it is too little to be a dwell. */
-function remaining(samples: Samples, core: SteadyCore, fixed: readonly SteadyCore[]): SteadyCore | null {
+function remaining(core: SteadyCore, fixed: readonly SteadyCore[]): SteadyCore | null {
   let { fromS, toS } = core;
   for (const other of fixed) {
     if (other.toS <= fromS || other.fromS >= toS) continue;
@@ -80,14 +85,13 @@ function remaining(samples: Samples, core: SteadyCore, fixed: readonly SteadyCor
     else toS = other.fromS;
   }
   if ((toS - fromS) * core.frequencyHz < FEWEST_PERIODS) return null;
-  return fromS === core.fromS && toS === core.toS
-    ? core
-    : asCore(samples, fromS, toS, core.frequencyHz, TOLERANCE);
+  return { ...core, fromS, toS };
 }
 
 /** Steady, or with a transient that has all but died by the end of the stretch. */
 function hasSettled(samples: Samples, core: SteadyCore): boolean {
-  const part = presentSamples(samples.timesS, samples.values, [core.fromS, core.toS]);
+  // the end is known to about a period
+  const part = presentSamples(samples.timesS, samples.values, [core.fromS, core.toS - 1 / core.frequencyHz]);
   const judged = judgeWindow(part, core.frequencyHz, 'unknown');
   if (judged === null) return false;
   const { joint } = judged.model;
