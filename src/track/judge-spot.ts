@@ -32,6 +32,7 @@ const MUCH_CLIPPED = 0.05;
 // A place this alike becomes as good as the marker with a little blur or change of light.
 const ALIKE_SCORE = 0.8;
 const DEFAULT_TRAVEL_PX = 48;
+const CLOSE_BY_PX = 20;
 
 /** What a judgement is told. */
 export interface JudgeOptions {
@@ -194,7 +195,7 @@ function refusal(texture: PatchTexture, saturatedFraction: number): string | nul
   return null;
 }
 
-/** The nearest look-alike within the travel. */
+/** The nearest look-alike within the travel: close by first, since of many repeats not all are listed. */
 function findAlias(
   image: LumaImage,
   x: number,
@@ -202,16 +203,15 @@ function findAlias(
   template: Template,
   travelPx: number,
 ): Alias | null {
-  const fits = listFits(image, template, { near: { x, y, radiusPx: travelPx }, minScore: ALIKE_SCORE });
-  let nearest: Alias | null = null;
-  for (const fit of fits) {
-    const distancePx = Math.hypot(fit.x - x, fit.y - y);
-    // The marker itself is among the fits.
-    if (distancePx > 1 && distancePx < (nearest?.distancePx ?? Number.POSITIVE_INFINITY)) {
-      nearest = { distancePx, score: fit.score };
-    }
+  for (const radiusPx of [Math.min(CLOSE_BY_PX, travelPx), travelPx]) {
+    const nearest = listFits(image, template, { near: { x, y, radiusPx }, minScore: ALIKE_SCORE })
+      .map((fit) => ({ distancePx: Math.hypot(fit.x - x, fit.y - y), score: fit.score }))
+      // The marker itself is among the fits.
+      .filter(({ distancePx }) => distancePx > 1)
+      .sort((a, b) => a.distancePx - b.distancePx)[0];
+    if (nearest) return nearest;
   }
-  return nearest;
+  return null;
 }
 
 function warningsOf(saturatedFraction: number, alias: Alias | null): string[] {

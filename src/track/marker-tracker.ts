@@ -1,5 +1,6 @@
 import { AdaptiveRegistrar, type MotionModel } from './adaptive-registrar.ts';
 import { believe } from './believe.ts';
+import { BlurRecovery, type BlurredFit } from './blur-recovery.ts';
 import { chooseFit, distance, type Point, SearchPlan } from './find-again.ts';
 import type { LumaImage } from './luma-image.ts';
 import type { Deformation } from './patch-sampler.ts';
@@ -17,6 +18,8 @@ import { Travel, type TravelBox } from './travel.ts';
 
 // While a marker is tracked elsewhere, it is looked for this often, in frames, in the range it was trusted in.
 const LOOK_HOME_EVERY = 10;
+// A marker smeared by half its patch scores this much with a sharp template.
+const LEAST_SMEARED_SCORE = 0.3;
 // A region should have room for two more steps, and for what patch and prediction need.
 const ROOM_PX = 6;
 const ROOM_STEPS = 2;
@@ -35,6 +38,8 @@ export interface MarkerTrackerOptions {
 interface Accepted extends Point {
   readonly registration: Registration;
   readonly reason: TrackReason | null;
+  readonly blurPx: number;
+  readonly uncertainty: RegistrationUncertainty;
 }
 
 /**
@@ -51,6 +56,7 @@ export class MarkerTracker {
   private readonly uncertainties = new Map<MotionModel, RegistrationUncertainty>();
   private readonly search: TemplateSearch;
   private readonly plan: SearchPlan;
+  private readonly blur: BlurRecovery;
   private readonly patchPx: number;
   private held: Point | null;
   private lostFrames = 0;
@@ -72,6 +78,7 @@ export class MarkerTracker {
     this.search = options.search ?? searchCoarsely;
     this.patchPx = Math.min(template.widthPx, template.heightPx);
     this.plan = new SearchPlan(this.patchPx);
+    this.blur = new BlurRecovery(template);
     this.held = options.start ? { x: options.start.x, y: options.start.y } : null;
   }
 
@@ -148,7 +155,9 @@ export class MarkerTracker {
   private tryAt(region: Region, expected: Point): Accepted | null {
     const { image, offsetX, offsetY } = region;
     const { history, template } = this;
-    const registration = this.registrar.register(image, expected.x - offsetX, expected.y - offsetY, history);
+    const sharp = this.registrar.register(image, expected.x - offsetX, expected.y - offsetY, history);
+    const smeared = this.tryBlurred(region, sharp);
+    const registration = smeared?.registration ?? sharp;
     const place = { x: registration.x + offsetX, y: registration.y + offsetY };
     const { believed, reason } = believe(registration, history.limit, {
       surprisePx: distance(place, expected),
@@ -158,9 +167,21 @@ export class MarkerTracker {
       alias: template.alias,
       wasLost: this.lostFrames > 0,
     });
-    if (believed) return { registration, reason, ...place };
+    if (believed) {
+      const uncertainty = smeared?.uncertainty ?? this.uncertaintyOf(this.registrar.lastModel);
+      return { registration, reason, ...place, blurPx: smeared?.blurPx ?? 0, uncertainty };
+    }
     this.refuse(reason ?? 'covered', registration.score);
     return null;
+  }
+
+  /** A low score may be that of a marker smeared by its motion. A turning one is not tried: its score has other reasons. */
+  private tryBlurred({ image, offsetX, offsetY }: Region, sharp: Registration): BlurredFit | null {
+    const { held, history, lostFrames } = this;
+    const low = sharp.converged && sharp.score < history.limit && sharp.score > LEAST_SMEARED_SCORE;
+    if (!low || !held || lostFrames > 0 || this.registrar.lastModel !== 'translation') return null;
+    const [stepX, stepY] = [sharp.x + offsetX - held.x, sharp.y + offsetY - held.y];
+    return this.blur.recover(image, sharp.x, sharp.y, stepX, stepY, history.limit);
   }
 
   /** Searches the region, near where the marker was expected unless it is time to look through all of it. */
@@ -214,7 +235,7 @@ export class MarkerTracker {
     const reason = accepted.reason ?? this.doubt;
     if (reason === null) this.travelled.include(x, y);
 
-    const covariance = this.uncertaintyOf(this.registrar.lastModel).ofRegistration(registration);
+    const covariance = accepted.uncertainty.ofRegistration(registration);
     const room = roomPx(region, this.template, x, y);
     return {
       state: reason === null ? 'ok' : 'doubtful',
@@ -225,6 +246,7 @@ export class MarkerTracker {
       uXPx: covariance && Math.sqrt(covariance.xx),
       uYPx: covariance && Math.sqrt(covariance.yy),
       reason,
+      blurPx: accepted.blurPx,
       roomPx: room,
       nearBorder: this.isNearBorder(room),
     };

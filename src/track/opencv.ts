@@ -67,8 +67,8 @@ export function correlateByOpenCv(image: FloatImage, patch: FloatImage): Float32
     const result = new cv.Mat();
     mats.push(result);
     cv.matchTemplate(imageMat, patchMat, result, cv.TM_CCOEFF_NORMED);
-    // A copy, since the heap moves when it grows. Flat places come out as anything; they are no match.
-    return Float32Array.from(result.data32F, (score) => (Math.abs(score) <= 1 + 1e-3 ? score : 0));
+    // A copy, since the heap moves when it grows.
+    return withoutFlatPlaces(result.data32F.slice());
   } catch (error) {
     if (typeof error !== 'number') throw error;
     throw new Error(
@@ -78,4 +78,10 @@ export function correlateByOpenCv(image: FloatImage, patch: FloatImage): Float32
     for (const mat of mats) mat.delete();
     cv.stackRestore(stack);
   }
+}
+
+/** Where the image is flat OpenCV divides by nearly nothing, and anything comes out; that is no match. */
+function withoutFlatPlaces(map: Float32Array): Float32Array {
+  for (let i = 0; i < map.length; i++) if (!(Math.abs(map[i]!) <= 1.001)) map[i] = 0;
+  return map;
 }

@@ -1,5 +1,5 @@
 import { cubicDerivativeWeights, cubicWeights } from './bspline.ts';
-import type { PatchWindow } from './patch-window.ts';
+import type { SplineWindow } from './patch-window.ts';
 
 /** A patch read from a window between pixels, with its gradients: row by row, DN and DN per pixel. */
 export interface SampledPatch {
@@ -32,6 +32,8 @@ const weightsX = new Float64Array(4);
 const weightsY = new Float64Array(4);
 const slopesX = new Float64Array(4);
 const slopesY = new Float64Array(4);
+// Value and slopes along x and y, left by `sample`.
+const sampled = new Float64Array(3);
 
 /**
  * Adds `weight` times the patch centred at (x, y), in pixels of the image the window was loaded from, to `sums`.
@@ -41,7 +43,7 @@ const slopesY = new Float64Array(4);
  * @throws Error where the window does not hold the patch
  */
 export function addPatch(
-  window: PatchWindow,
+  window: SplineWindow,
   x: number,
   y: number,
   widthPx: number,
@@ -53,34 +55,44 @@ export function addPatch(
   const halfX = (widthPx - 1) / 2;
   const halfY = (heightPx - 1) / 2;
   const { xx, xy, yx, yy } = deformation;
+  const straight = xx === 0 && xy === 0 && yx === 0 && yy === 0;
+  const centreX = x - window.originX;
+  const centreY = y - window.originY;
+  // All samples of a patch that is only moved lie at one place between pixels.
+  if (straight) setWeights(centreX - halfX, centreY - halfY);
   for (let row = -halfY, i = 0; row <= halfY; row++) {
     for (let column = -halfX; column <= halfX; column++, i++) {
-      const sampleX = x - window.originX + column + xx * column + xy * row;
-      const sampleY = y - window.originY + row + yx * column + yy * row;
-      const [value, slopeX, slopeY] = sample(window, sampleX, sampleY);
-      sums.values[i]! += weight * value;
-      sums.gradientX[i]! += weight * (slopeX * (1 + xx) + slopeY * yx);
-      sums.gradientY[i]! += weight * (slopeX * xy + slopeY * (1 + yy));
+      const sampleX = centreX + column + xx * column + xy * row;
+      const sampleY = centreY + row + yx * column + yy * row;
+      if (!straight) setWeights(sampleX, sampleY);
+      sample(window, Math.floor(sampleX), Math.floor(sampleY));
+      sums.values[i]! += weight * sampled[0]!;
+      sums.gradientX[i]! += weight * (sampled[1]! * (1 + xx) + sampled[2]! * yx);
+      sums.gradientY[i]! += weight * (sampled[1]! * xy + sampled[2]! * (1 + yy));
     }
   }
 }
 
-function sample(window: PatchWindow, x: number, y: number): readonly [number, number, number] {
+function setWeights(x: number, y: number): void {
+  cubicWeights(x - Math.floor(x), weightsX);
+  cubicWeights(y - Math.floor(y), weightsY);
+  cubicDerivativeWeights(x - Math.floor(x), slopesX);
+  cubicDerivativeWeights(y - Math.floor(y), slopesY);
+}
+
+/** Samples between the pixel (column, row) and the next, with the weights set. */
+function sample(window: SplineWindow, column: number, row: number): void {
   const { coefficients, width, height } = window;
-  const columnX = Math.floor(x);
-  const rowY = Math.floor(y);
-  if (columnX < 1 || rowY < 1 || columnX + 2 >= width || rowY + 2 >= height) {
-    throw new Error(`sample at ${x}, ${y} needs pixels outside a window of ${width} x ${height}`);
+  if (column < 1 || row < 1 || column + 2 >= width || row + 2 >= height) {
+    throw new Error(
+      `a sample at pixel ${column}, ${row} needs pixels outside a window of ${width} x ${height}`,
+    );
   }
-  cubicWeights(x - columnX, weightsX);
-  cubicWeights(y - rowY, weightsY);
-  cubicDerivativeWeights(x - columnX, slopesX);
-  cubicDerivativeWeights(y - rowY, slopesY);
   let value = 0;
   let slopeX = 0;
   let slopeY = 0;
   for (let j = 0; j < 4; j++) {
-    const start = (rowY - 1 + j) * width + columnX - 1;
+    const start = (row - 1 + j) * width + column - 1;
     let alongRow = 0;
     let slopeAlongRow = 0;
     for (let k = 0; k < 4; k++) {
@@ -92,5 +104,7 @@ function sample(window: PatchWindow, x: number, y: number): readonly [number, nu
     slopeX += weightsY[j]! * slopeAlongRow;
     slopeY += slopesY[j]! * alongRow;
   }
-  return [value, slopeX, slopeY];
+  sampled[0] = value;
+  sampled[1] = slopeX;
+  sampled[2] = slopeY;
 }

@@ -4,11 +4,20 @@ import type { LumaImage } from './luma-image.ts';
 /** Grey values inside the tracker are on this scale, whatever the bit depth of the frames. */
 export const FULL_SCALE_DN = 255;
 
+/** Cubic B-spline coefficients of a piece of a picture, row by row, and where its upper left pixel stands. */
+export interface SplineWindow {
+  readonly width: number;
+  readonly height: number;
+  readonly coefficients: Float64Array;
+  readonly originX: number;
+  readonly originY: number;
+}
+
 /**
  * A window of a frame as cubic B-spline coefficients, smoothed by [1 2 1] / 4 in x and y on the way in where asked.
  * It is made once per patch size and loaded for every frame, without allocation.
  */
-export class PatchWindow {
+export class PatchWindow implements SplineWindow {
   readonly width: number;
   readonly height: number;
   /** Coefficients, row by row, DN of full scale 255. */

@@ -45,10 +45,8 @@ export class RegistrationUncertainty {
   constructor(template: Template, parameters: 2 | 6) {
     const { smoothed, framesAveraged, noiseDn } = template;
     this.perUnitNoise = covariancePerUnitNoise(template, parameters);
-    this.noiseGainByPhase = Float64Array.from({ length: PHASES + 1 }, (_, k) =>
-      interpolatedNoiseGain(k / PHASES, smoothed),
-    );
-    this.templateNoiseGain = interpolatedNoiseGain(0, smoothed) ** 2 / framesAveraged;
+    this.noiseGainByPhase = noiseGainsByPhase(smoothed);
+    this.templateNoiseGain = this.noiseGainByPhase[0]! ** 2 / framesAveraged;
     const noise = noiseDn * noiseDn * this.templateNoiseGain;
     this.signalShare = Math.max(LEAST_SIGNAL_SHARE, 1 - noise / variance(template.values));
   }
@@ -79,6 +77,18 @@ export class RegistrationUncertainty {
   private noiseGainAt(position: number): number {
     return this.noiseGainByPhase[Math.round((position - Math.floor(position)) * PHASES)]!;
   }
+}
+
+const noiseGains = new Map<boolean, Float64Array>();
+
+/** `interpolatedNoiseGain` at fractions k / PHASES, worked out once. */
+function noiseGainsByPhase(smoothed: boolean): Float64Array {
+  let gains = noiseGains.get(smoothed);
+  if (!gains) {
+    gains = Float64Array.from({ length: PHASES + 1 }, (_, k) => interpolatedNoiseGain(k / PHASES, smoothed));
+    noiseGains.set(smoothed, gains);
+  }
+  return gains;
 }
 
 function variance(values: Float64Array): number {

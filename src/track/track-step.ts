@@ -29,6 +29,8 @@ export interface MeasuredStep {
   readonly uXPx: number | null;
   readonly uYPx: number | null;
   readonly reason: TrackReason | null;
+  /** Length by which the marker is smeared along its motion more than the template, px; 0 where not noticeably. */
+  readonly blurPx: number;
   /** Pixels left between the patch and the nearest border of the region; below 0 it is cut off. */
   readonly roomPx: number;
   /** True when the next frames may need more room than the region has: widen it, or move it. */

@@ -75,29 +75,32 @@ export function addTexture(
   const cos = Math.cos(angleRad);
   const sin = Math.sin(angleRad);
   const alongX = new Float64Array(width);
+  const alongY = new Float64Array(height);
   for (let k = 0; k < texture.x.length; k++) {
-    const centreX = pose.x + cos * texture.x[k]! - sin * texture.y[k]!;
-    const centreY = pose.y + sin * texture.x[k]! + cos * texture.y[k]!;
     const sigma = texture.sigma[k]!;
+    const [left, right] = pixelShares(pose.x + cos * texture.x[k]! - sin * texture.y[k]!, sigma, alongX);
+    const [top, bottom] = pixelShares(pose.y + sin * texture.x[k]! + cos * texture.y[k]!, sigma, alongY);
     // Integral of exp(-r^2 / 2 sigma^2) over a pixel, by error functions.
     const peak = (gain * texture.amplitude[k]! * Math.PI * sigma * sigma) / 2;
-    const [left, right] = [reachFrom(centreX, -sigma), Math.min(width - 1, reachFrom(centreX, sigma))];
-    const [top, bottom] = [reachFrom(centreY, -sigma), Math.min(height - 1, reachFrom(centreY, sigma))];
-    for (let x = Math.max(0, left); x <= right; x++) alongX[x] = pixelShare(x - centreX, sigma);
-    for (let y = Math.max(0, top); y <= bottom; y++) {
-      const alongY = peak * pixelShare(y - centreY, sigma);
-      for (let x = Math.max(0, left); x <= right; x++) field[y * width + x]! += alongY * alongX[x]!;
+    for (let y = top; y <= bottom; y++) {
+      const factor = peak * alongY[y]!;
+      for (let x = left; x <= right; x++) field[y * width + x]! += factor * alongX[x]!;
     }
   }
 }
 
-function reachFrom(centre: number, sigma: number): number {
-  return Math.round(centre + 5.5 * sigma);
-}
-
-function pixelShare(offset: number, sigma: number): number {
+/** Writes the share of each pixel in a Gaussian along one axis; returns the first and last pixel it reaches. */
+function pixelShares(centre: number, sigma: number, shares: Float64Array): [number, number] {
+  const first = Math.max(0, Math.round(centre - 5.5 * sigma));
+  const last = Math.min(shares.length - 1, Math.round(centre + 5.5 * sigma));
   const scale = 1 / (Math.SQRT2 * sigma);
-  return erf((offset + 0.5) * scale) - erf((offset - 0.5) * scale);
+  let before = erf((first - 0.5 - centre) * scale);
+  for (let x = first; x <= last; x++) {
+    const after = erf((x + 0.5 - centre) * scale);
+    shares[x] = after - before;
+    before = after;
+  }
+  return [first, last];
 }
 
 /** Error function within 1.5e-7: Abramowitz and Stegun 7.1.26. */

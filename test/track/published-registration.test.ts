@@ -56,9 +56,7 @@ describe('inverse-compositional Gauss-Newton on a 31 x 31 subset of an analytic 
     });
     const errors = shifts.map((u, k) => registrar.register(shifted[k]!, 40, 40).x - 40 - u);
     for (const error of errors) expect(Math.abs(error)).toBeLessThan(4e-4);
-    expect(Math.hypot(...errors)).toBeLessThan(
-      0.75 * Math.hypot(2.9e-4, 4.7e-4, 5e-6, 4.6e-4, 2.9e-4),
-    );
+    expect(Math.hypot(...errors)).toBeLessThan(0.75 * Math.hypot(2.9e-4, 4.7e-4, 5e-6, 4.6e-4, 2.9e-4));
   });
 
   // Pan et al. 2008, Opt. Express 16, 7037; prediction 0.010089 px and Monte Carlo 0.0094 px derived.
