@@ -2,7 +2,7 @@ import type { ClipInfo } from './clip-info.ts';
 import { lumaAccess } from './pixel-format.ts';
 import type { InputListing } from './stream-listing.ts';
 
-/** The frames may end this much before the file's stated end, s and as a fraction of it: sound often runs longer. */
+/** Pictures may end this much before the file does, s and as a fraction of their own length: sound often runs longer. */
 const EARLY_END_S = 0.25;
 const EARLY_END_FRACTION = 0.1;
 
@@ -47,13 +47,12 @@ export function clipWarnings(
     warnings.push(`The file holds ${listing.videoStreams} video streams; the first is measured.`);
   }
   const damage = complaints.find((line) => /partial file|truncat|corrupt|premature|invalid/i.test(line));
-  const statedS = listing.durationS ?? 0;
-  const endsEarly = statedS - clip.durationS > Math.max(EARLY_END_S, EARLY_END_FRACTION * statedS);
+  const endS = (clip.originTicks * clip.timeBase[0]) / clip.timeBase[1] + clip.durationS;
+  const statedS = listing.endS ?? 0;
+  const endsEarly = statedS - endS > Math.max(EARLY_END_S, EARLY_END_FRACTION * clip.durationS);
   if (damage !== undefined || endsEarly) {
     const said = damage === undefined ? '' : ` ("${damage.trim()}")`;
-    const ends = endsEarly
-      ? `, its pictures end at ${clip.durationS.toFixed(2)} of ${statedS.toFixed(2)} s`
-      : '';
+    const ends = endsEarly ? `, its pictures end ${(statedS - endS).toFixed(2)} s before it does` : '';
     warnings.push(`The file is damaged or cut off${said}${ends}; copy it anew from the camera if you can.`);
   }
   return warnings;

@@ -21,15 +21,15 @@ export interface InputListing {
   readonly video: StreamListing | null;
   readonly videoStreams: number;
   readonly audioStreams: number;
-  /** How long the file says it is, s, the longest stream counting; null where it does not say. */
-  readonly durationS: number | null;
+  /** Time in the file at which it says its longest stream ends, s; null where it does not say. */
+  readonly endS: number | null;
   /** Tags of file and streams; the first of a name counts. */
   readonly tags: ReadonlyMap<string, string>;
 }
 
 const STREAM_LINE = /^\s*Stream #0:\d+(?:\[0x[0-9a-f]+\])?(?:\([^)]*\))?: (\w+): (.*)$/;
 const TAG_LINE = /^\s+([^\s:][^:]*?)\s*: (.*)$/;
-const DURATION_LINE = /^\s*Duration: (\d+):(\d+):([\d.]+)/;
+const DURATION_LINE = /^\s*Duration: (\d+):(\d+):([\d.]+)(?:, start: (-?[\d.]+))?/;
 const MATRIX_LINE = /display ?matrix: rotation of (-?[\d.]+) degrees/i;
 /** Rates the listing rounds to two digits, and what they stand for. */
 const NTSC_RATES = new Map(
@@ -45,7 +45,7 @@ export function readListing(lines: readonly string[]): InputListing {
   let video: StreamListing | null = null;
   let videoStreams = 0;
   let audioStreams = 0;
-  let durationS: number | null = null;
+  let endS: number | null = null;
   let inFirstVideo = false;
   for (const line of lines) {
     if (/^Output #0/.test(line)) break;
@@ -62,7 +62,8 @@ export function readListing(lines: readonly string[]): InputListing {
     }
     const duration = DURATION_LINE.exec(line);
     if (duration !== null) {
-      durationS = Number(duration[1]) * 3600 + Number(duration[2]) * 60 + Number(duration[3]);
+      const [, hours, minutes, seconds, start = '0'] = duration;
+      endS = Number(start) + Number(hours) * 3600 + Number(minutes) * 60 + Number(seconds);
       continue;
     }
     const angle = MATRIX_LINE.exec(line)?.[1];
@@ -73,7 +74,7 @@ export function readListing(lines: readonly string[]): InputListing {
     const [, name, value] = TAG_LINE.exec(line) ?? [];
     if (name !== undefined && value !== undefined && !tags.has(name)) tags.set(name, value);
   }
-  return { video, videoStreams, audioStreams, durationS, tags };
+  return { video, videoStreams, audioStreams, endS, tags };
 }
 
 /** Reads "h264 (High) (avc1 / 0x31637661), yuv420p(tv, bt709), 1920x1080 [SAR 1:1 DAR 16:9], 30 fps, ...". */
