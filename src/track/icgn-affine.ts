@@ -1,3 +1,11 @@
+import {
+  type AffineWarp,
+  composeInverse,
+  edgeMotion,
+  isWithin,
+  reachAlongX,
+  reachAlongY,
+} from './affine-warp.ts';
 import type { LumaImage } from './luma-image.ts';
 import { type Deformation, UNDEFORMED } from './patch-sampler.ts';
 import { PatchWindow } from './patch-window.ts';
@@ -34,8 +42,7 @@ export class AffineRegistrar {
   private readonly halfX: number;
   private readonly halfY: number;
   private readonly step = new Float64Array(6);
-  /** x, y of the patch's centre in the image, then xx, xy, yx, yy. */
-  private readonly warp = new Float64Array(6);
+  private readonly warp: AffineWarp = new Float64Array(6);
   private readonly sums = new Float64Array(9);
 
   /** @throws Error where the template has no texture in two directions (`judgeSpot` says so beforehand) */
@@ -100,7 +107,7 @@ export class AffineRegistrar {
       this.judge();
       if (result.gain < LEAST_GAIN) break;
       const moved = this.takeStep(result.gain);
-      if (warp.some((value, k) => k >= 2 && !(Math.abs(value) <= LARGEST_DEFORMATION))) break;
+      if (!isWithin(warp, LARGEST_DEFORMATION)) break;
       if (moved < 2 * this.stopPx) {
         result.converged = true;
         break;
@@ -126,8 +133,7 @@ export class AffineRegistrar {
   /** Whether the window has the warped patch and the pixels the spline needs round it. */
   private holds(): boolean {
     const { window, warp, halfX, halfY } = this;
-    const reachX = halfX * (1 + Math.abs(warp[2]!)) + halfY * Math.abs(warp[3]!);
-    const reachY = halfY * (1 + Math.abs(warp[5]!)) + halfX * Math.abs(warp[4]!);
+    const [reachX, reachY] = [reachAlongX(warp, halfX, halfY), reachAlongY(warp, halfX, halfY)];
     const x = warp[0]! - window.originX;
     const y = warp[1]! - window.originY;
     return (
@@ -145,9 +151,9 @@ export class AffineRegistrar {
     result.residualDn = Math.sqrt(Math.max(0, spread - sums[2]! * result.gain) / count);
   }
 
-  /** Solves for the step and composes its inverse into the warp; returns how far the patch's corners moved, px. */
+  /** Solves for the step and composes its inverse into the warp; returns how far it moves the patch, px. */
   private takeStep(gain: number): number {
-    const { step, warp, sums, inverseHessian, halfX, halfY } = this;
+    const { step, sums, inverseHessian, halfX, halfY } = this;
     for (let a = 0; a < 6; a++) {
       let sum = 0;
       for (let b = 0; b < 6; b++) sum += inverseHessian[a * 6 + b]! * sums[3 + b]!;
@@ -155,28 +161,8 @@ export class AffineRegistrar {
     }
     const length = Math.sqrt(step[0]! * step[0]! + step[1]! * step[1]!);
     if (length > LONGEST_STEP_PX) for (let a = 0; a < 6; a++) step[a]! *= LONGEST_STEP_PX / length;
-    const stepXx = 1 + step[2]!;
-    const stepYy = 1 + step[5]!;
-    const determinant = stepXx * stepYy - step[3]! * step[4]!;
-    const inverseXx = stepYy / determinant;
-    const inverseXy = -step[3]! / determinant;
-    const inverseYx = -step[4]! / determinant;
-    const inverseYy = stepXx / determinant;
-    const backX = -(inverseXx * step[0]! + inverseXy * step[1]!);
-    const backY = -(inverseYx * step[0]! + inverseYy * step[1]!);
-    const xx = 1 + warp[2]!;
-    const xy = warp[3]!;
-    const yx = warp[4]!;
-    const yy = 1 + warp[5]!;
-    warp[0]! += xx * backX + xy * backY;
-    warp[1]! += yx * backX + yy * backY;
-    warp[2] = xx * inverseXx + xy * inverseYx - 1;
-    warp[3] = xx * inverseXy + xy * inverseYy;
-    warp[4] = yx * inverseXx + yy * inverseYx;
-    warp[5] = yx * inverseXy + yy * inverseYy - 1;
-    const turnX = step[2]! * step[2]! + step[4]! * step[4]!;
-    const turnY = step[3]! * step[3]! + step[5]! * step[5]!;
-    return Math.min(length, LONGEST_STEP_PX) + Math.sqrt(halfX * halfX * turnX + halfY * halfY * turnY);
+    composeInverse(this.warp, step);
+    return Math.min(length, LONGEST_STEP_PX) + edgeMotion(step, halfX, halfY);
   }
 
   /** Samples the warped patch and sums it against template and steepest descent. */

@@ -1,14 +1,11 @@
-import { AdaptiveRegistrar, type MotionModel } from './adaptive-registrar.ts';
-import { believe } from './believe.ts';
-import { BlurRecovery, type BlurredFit } from './blur-recovery.ts';
+import type { MotionModel } from './adaptive-registrar.ts';
 import { chooseFit, distance, type Point, SearchPlan } from './find-again.ts';
 import type { LumaImage } from './luma-image.ts';
+import { MarkerTrial, type TrialOutcome } from './marker-trial.ts';
 import type { Deformation } from './patch-sampler.ts';
 import { expectedScore } from './patch-texture.ts';
 import { Predictor } from './predictor.ts';
 import { type Region, roomPx } from './region.ts';
-import type { Registration } from './registration.ts';
-import { RegistrationUncertainty } from './registration-uncertainty.ts';
 import { ScoreHistory } from './score-history.ts';
 import { searchCoarsely } from './search-image.ts';
 import type { Template } from './template.ts';
@@ -18,8 +15,6 @@ import { Travel, type TravelBox } from './travel.ts';
 
 // While a marker is tracked elsewhere, it is looked for this often, in frames, in the range it was trusted in.
 const LOOK_HOME_EVERY = 10;
-// A marker smeared by half its patch scores this much with a sharp template.
-const LEAST_SMEARED_SCORE = 0.3;
 // A region should have room for two more steps, and for what patch and prediction need.
 const ROOM_PX = 6;
 const ROOM_STEPS = 2;
@@ -34,14 +29,6 @@ export interface MarkerTrackerOptions {
   readonly search?: TemplateSearch;
 }
 
-/** A registration that is taken for the marker, at (x, y) of the coded frame. */
-interface Accepted extends Point {
-  readonly registration: Registration;
-  readonly reason: TrackReason | null;
-  readonly blurPx: number;
-  readonly uncertainty: RegistrationUncertainty;
-}
-
 /**
  * Follows one marker from frame to frame: predicts its place, registers its template there, and judges the outcome.
  * The template stays the same, so nothing drifts. A marker that is covered or gone is lost, which is a gap and never
@@ -49,14 +36,12 @@ interface Accepted extends Point {
  * backwards in time. Positions are in pixels of the coded frame.
  */
 export class MarkerTracker {
-  private readonly registrar: AdaptiveRegistrar;
+  private readonly trial: MarkerTrial;
   private readonly history: ScoreHistory;
   private readonly predictor = new Predictor();
   private readonly travelled = new Travel();
-  private readonly uncertainties = new Map<MotionModel, RegistrationUncertainty>();
   private readonly search: TemplateSearch;
   private readonly plan: SearchPlan;
-  private readonly blur: BlurRecovery;
   private readonly patchPx: number;
   private held: Point | null;
   private lostFrames = 0;
@@ -73,23 +58,22 @@ export class MarkerTracker {
     private readonly template: Template,
     options: MarkerTrackerOptions = {},
   ) {
-    this.registrar = new AdaptiveRegistrar(template, options.model ?? 'auto');
     this.history = new ScoreHistory(expectedScore(template));
+    this.trial = new MarkerTrial(template, options.model ?? 'auto', this.history);
     this.search = options.search ?? searchCoarsely;
     this.patchPx = Math.min(template.widthPx, template.heightPx);
     this.plan = new SearchPlan(this.patchPx);
-    this.blur = new BlurRecovery(template);
     this.held = options.start ? { x: options.start.x, y: options.start.y } : null;
   }
 
   /** The motion model in use; it changes from translation to affine at most once. */
   get model(): MotionModel {
-    return this.registrar.model;
+    return this.trial.registrar.model;
   }
 
   /** How the marker was deformed in the last measured frame. */
   get deformation(): Deformation {
-    return this.registrar.deformation;
+    return this.trial.registrar.deformation;
   }
 
   /** The last known place; null before the first. A place to look at, not a measurement. */
@@ -123,7 +107,7 @@ export class MarkerTracker {
     return accepted ? this.keep(region, timeS, accepted) : this.lose(region);
   }
 
-  private lookWhereExpected(region: Region, timeS: number): Accepted | null {
+  private lookWhereExpected(region: Region, timeS: number): TrialOutcome | null {
     const { held } = this;
     const expected = this.lostFrames > 0 ? held : (this.predictor.predict(timeS) ?? held);
     if (!expected || !held) return this.trySearch(region, null);
@@ -135,7 +119,7 @@ export class MarkerTracker {
   }
 
   /** A marker that is tracked elsewhere may be a look-alike, and the marker itself back in its place. */
-  private lookHome(region: Region): Accepted | null {
+  private lookHome(region: Region): TrialOutcome | null {
     const { box, extentPx } = this.travelled;
     if (this.doubt !== 'found-elsewhere' || !box || this.frames % LOOK_HOME_EVERY !== 0) return null;
     const home = { x: (box.minX + box.maxX) / 2, y: (box.minY + box.maxY) / 2 };
@@ -151,41 +135,20 @@ export class MarkerTracker {
     return accepted;
   }
 
-  /** Registers from an expected place. */
-  private tryAt(region: Region, expected: Point): Accepted | null {
-    const { image, offsetX, offsetY } = region;
-    const { history, template } = this;
-    const sharp = this.registrar.register(image, expected.x - offsetX, expected.y - offsetY, history);
-    const smeared = this.tryBlurred(region, sharp);
-    const registration = smeared?.registration ?? sharp;
-    const place = { x: registration.x + offsetX, y: registration.y + offsetY };
-    const { believed, reason } = believe(registration, history.limit, {
-      surprisePx: distance(place, expected),
-      roomPx: roomPx(region, template, place.x, place.y),
-      largestStepPx: this.predictor.largestStepPx(),
-      patchPx: this.patchPx,
-      alias: template.alias,
+  /** Registers from an expected place; null where what is there is not taken for the marker. */
+  private tryAt(region: Region, expected: Point): TrialOutcome | null {
+    const outcome = this.trial.at(region, expected, {
+      held: this.held,
       wasLost: this.lostFrames > 0,
+      largestStepPx: this.predictor.largestStepPx(),
     });
-    if (believed) {
-      const uncertainty = smeared?.uncertainty ?? this.uncertaintyOf(this.registrar.lastModel);
-      return { registration, reason, ...place, blurPx: smeared?.blurPx ?? 0, uncertainty };
-    }
-    this.refuse(reason ?? 'covered', registration.score);
+    if (outcome.believed) return outcome;
+    this.refuse(outcome.reason ?? 'covered', outcome.registration.score);
     return null;
   }
 
-  /** A low score may be that of a marker smeared by its motion. A turning one is not tried: its score has other reasons. */
-  private tryBlurred({ image, offsetX, offsetY }: Region, sharp: Registration): BlurredFit | null {
-    const { held, history, lostFrames } = this;
-    const low = sharp.converged && sharp.score < history.limit && sharp.score > LEAST_SMEARED_SCORE;
-    if (!low || !held || lostFrames > 0 || this.registrar.lastModel !== 'translation') return null;
-    const [stepX, stepY] = [sharp.x + offsetX - held.x, sharp.y + offsetY - held.y];
-    return this.blur.recover(image, sharp.x, sharp.y, stepX, stepY, history.limit);
-  }
-
   /** Searches the region, near where the marker was expected unless it is time to look through all of it. */
-  private trySearch(region: Region, expected: Point | null): Accepted | null {
+  private trySearch(region: Region, expected: Point | null): TrialOutcome | null {
     const { image, offsetX, offsetY } = region;
     const { history, travelled } = this;
     // A start that was given and never confirmed is a hint, not a place to stay near.
@@ -223,7 +186,7 @@ export class MarkerTracker {
   }
 
   /** Remembers a measured frame. */
-  private keep(region: Region, timeS: number, accepted: Accepted): MeasuredStep {
+  private keep(region: Region, timeS: number, accepted: TrialOutcome): MeasuredStep {
     const { registration, x, y } = accepted;
     if (this.lostFrames > 0) this.predictor.clear();
     this.lostFrames = 0;
@@ -272,15 +235,6 @@ export class MarkerTracker {
 
   private isNearBorder(room: number): boolean {
     return room < ROOM_PX + ROOM_STEPS * this.predictor.largestStepPx();
-  }
-
-  private uncertaintyOf(model: MotionModel): RegistrationUncertainty {
-    let uncertainty = this.uncertainties.get(model);
-    if (!uncertainty) {
-      uncertainty = new RegistrationUncertainty(this.template, model === 'affine' ? 6 : 2);
-      this.uncertainties.set(model, uncertainty);
-    }
-    return uncertainty;
   }
 }
 
