@@ -1,4 +1,4 @@
-/** Markup that is already safe to put into a page. Made by `html` only. */
+/** Markup that is already safe to put into a page. Made by `html`, and where a style sheet is put together from escaped parts. */
 export class Html {
   constructor(readonly markup: string) {}
   toString(): string {

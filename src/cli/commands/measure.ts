@@ -1,7 +1,7 @@
 import { withMeasured } from '../../engine/keep-measured.ts';
 import { type Measurement, measureTest } from '../../engine/measure-test.ts';
 import type { MeasureProgress } from '../../engine/progress.ts';
-import { reportHtml } from '../../report/report-html.ts';
+import { makeReport } from '../../report/make-report.ts';
 import { resultsText } from '../../report/results-text.ts';
 import { loadTest, saveTest } from '../../testfile/on-disk.ts';
 import type { TestFile } from '../../testfile/schema.ts';
@@ -52,7 +52,8 @@ export async function measure(testPath: string, options: MeasureCommandOptions):
   const test = await loadTest(testPath);
   if (options.out !== undefined) await prepareFolder(options.out);
   const measurement = await measureWithProgress(test, testPath, options.refine ?? false);
-  if (options.out !== undefined) await writeResults(options.out, measurement, reportHtml(test, measurement));
+  if (options.out !== undefined)
+    await writeResults(options.out, measurement, await makeReport(test, measurement, { testPath }));
   if (options.save) await saveTest(testPath, withMeasured(test, measurement.results));
   process.stdout.write(
     options.json ? resultsJson(measurement) : resultsText(measurement.results, labelsOf(test)),

@@ -54,9 +54,7 @@ export function amplitudeChart(data: ResponseData, looks: ChartLooks = PAPER_LOO
   const excluded = data.dwells.filter((dwell) => dwell.excluded).map(amplitudePoint);
   return plotChart(looks, {
     series: [
-      ...(curve?.amplitudeBar
-        ? bandSeries('95 % band of the fit', line, curve.amplitudeBar, look.colour)
-        : []),
+      ...(curve?.amplitudeBar ? bandSeries('95 % band', line, curve.amplitudeBar, look.colour) : []),
       ...(line.length > 0 ? [lineSeries(looks, 'fit', line, { colour: look.colour })] : []),
       ...marks(data, looks),
       barSeries(used, look.colour),

@@ -1,4 +1,3 @@
-import type { ChartConfiguration } from 'chart.js';
 import { type ChartLooks, PAPER_LOOKS, seriesLook } from './looks.ts';
 import { type PlotChart, type PlotPoint, plotChart } from './plot-chart.ts';
 import { lineSeries, pointSeries } from './series.ts';
@@ -14,9 +13,13 @@ export interface CircleData {
   readonly circle: { readonly x: number; readonly y: number; readonly radius: number } | null;
 }
 
+const MARGIN_PX = { axisY: 58, axisX: 38, edge: 8 } as const;
+const PLOT_PX = 256;
 /** Canvas on which one unit of x is as long as one of y: the margins are fixed so that the plot itself is square. */
-export const CIRCLE_SIZE = { widthPx: 366, heightPx: 366 } as const;
-const MARGIN_PX = { axisY: 58, axisX: 38, top: 28, right: 8 } as const;
+export const CIRCLE_SIZE = {
+  widthPx: MARGIN_PX.axisY + PLOT_PX + MARGIN_PX.edge,
+  heightPx: MARGIN_PX.edge + PLOT_PX + MARGIN_PX.axisX,
+} as const;
 const CIRCLE_STEPS = 120;
 const ROOM = 0.08;
 
@@ -36,24 +39,30 @@ function square(points: readonly PlotPoint[]): { x: number; y: number; half: num
   return { x: (left + right) / 2, y: (low + high) / 2, half };
 }
 
-/** Gives the axes fixed widths, so that plot area and canvas keep their proportion whatever the tick labels are. */
+const fixed =
+  (side: 'width' | 'height', px: number) =>
+  (axis: { width: number; height: number }): void => {
+    axis[side] = px;
+  };
+
+/** Gives the axes fixed widths, so that the plot stays square whatever the tick labels are. */
 function fixMargins(chart: PlotChart): PlotChart {
-  const scales = chart.options?.scales as NonNullable<
-    NonNullable<ChartConfiguration<'scatter'>['options']>['scales']
-  >;
-  const { x, y } = scales;
-  if (x)
-    x.afterFit = (scale) => {
-      scale.height = MARGIN_PX.axisX;
-    };
-  if (y)
-    y.afterFit = (scale) => {
-      scale.width = MARGIN_PX.axisY;
-    };
-  return chart;
+  const { edge } = MARGIN_PX;
+  const scales = chart.options?.scales ?? {};
+  return {
+    ...chart,
+    options: {
+      ...chart.options,
+      layout: { autoPadding: false, padding: { top: edge, right: edge, bottom: 0, left: 0 } },
+      scales: {
+        x: { ...scales['x'], afterFit: fixed('height', MARGIN_PX.axisX) },
+        y: { ...scales['y'], afterFit: fixed('width', MARGIN_PX.axisY) },
+      },
+    },
+  } as PlotChart;
 }
 
-/** The circle plot: responses, the circle through them, and the fitted curve, with equal scales. */
+/** The circle plot: responses, the circle through them (dashed), and the fitted curve, with equal scales; no legend. */
 export function circleChart(data: CircleData, looks: ChartLooks = PAPER_LOOKS): PlotChart {
   const around = data.circle ? round(data.circle) : [];
   const frame = square([...data.dwells, ...around]);
@@ -78,6 +87,7 @@ export function circleChart(data: CircleData, looks: ChartLooks = PAPER_LOOKS): 
       max: frame.y + frame.half,
       mostTicks: 6,
     },
+    legend: false,
   });
   return fixMargins(chart);
 }

@@ -11,11 +11,10 @@ export interface CycleData {
   readonly offset: number;
   readonly amplitude: number;
   readonly phaseRad: number;
-  readonly unit: string;
 }
 
 const SINE_STEPS = 48;
-const MOST_SAMPLES = 150;
+const MOST_SAMPLES = 100;
 const HEADROOM = 1.12;
 
 /** Every so many-th sample, at most `most`, gaps left out. */
@@ -41,12 +40,13 @@ export function cycleChart(data: CycleData, looks: ChartLooks = PAPER_LOOKS): Pl
     series: [
       {
         ...pointSeries(looks, 'samples', samples, seriesLook(looks, 0), true),
-        pointRadius: 1,
+        pointRadius: 1.4,
+        pointStyle: 'rect',
         pointBorderWidth: 0,
       },
       lineSeries(looks, 'fit', sine, { colour: looks.ink, widthPx: 0.9 }),
     ],
-    x: { title: 'cycle', min: 0, max: 1, step: 0.5 },
+    x: { title: '', min: 0, max: 1, step: 0.5 },
     y: { title: '', min: -reach, max: reach, mostTicks: 5 },
     legend: false,
   });

@@ -27,7 +27,7 @@ export function lagChart(data: ResponseData, looks: ChartLooks = PAPER_LOOKS): P
   const max = TICK_DEG * Math.ceil(Math.max(180, ...lags) / TICK_DEG);
   return plotChart(looks, {
     series: [
-      ...(curve?.lagBarDeg ? bandSeries('95 % band of the fit', line, curve.lagBarDeg, look.colour) : []),
+      ...(curve?.lagBarDeg ? bandSeries('95 % band', line, curve.lagBarDeg, look.colour) : []),
       ...(line.length > 0 ? [lineSeries(looks, 'fit', line, { colour: look.colour })] : []),
       ...(naturalHz === null
         ? []

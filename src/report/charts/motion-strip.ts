@@ -10,11 +10,10 @@ export interface MotionStripData {
   readonly window: readonly [number, number] | null;
   /** Steady amplitude found in the window; null where there is none. */
   readonly amplitude: number | null;
-  readonly unit: string;
 }
 
 /** Pairs of least and largest value drawn at most; more cannot be told apart on a strip. */
-const MOST_COLUMNS = 240;
+const MOST_COLUMNS = 160;
 const HEADROOM = 1.12;
 
 /**
@@ -80,8 +79,8 @@ export function motionStrip(data: MotionStripData, looks: ChartLooks = PAPER_LOO
           )
         : []),
     ],
-    x: { title: 'time, s', mostTicks: 6, ...ends(data.timesS) },
-    y: { title: data.unit, min: -reach, max: reach, mostTicks: 5 },
+    x: { title: '', mostTicks: 6, ...ends(data.timesS) },
+    y: { title: '', min: -reach, max: reach, mostTicks: 5 },
     legend: false,
   });
 }

@@ -47,6 +47,7 @@ function axis(looks: ChartLooks, spec: PlotAxis) {
       color: looks.soft,
       font,
       maxRotation: 0,
+      includeBounds: false,
       maxTicksLimit: spec.mostTicks ?? 9,
       ...(spec.step === undefined ? {} : { stepSize: spec.step }),
     },
@@ -64,12 +65,13 @@ function options(looks: ChartLooks, parts: PlotParts): ChartOptions<'scatter'> {
       legend: {
         display: parts.legend ?? true,
         align: 'start',
+        reverse: true,
         labels: {
           color: looks.ink,
           font: { family: looks.fontFamily, size: looks.fontSizePx },
           usePointStyle: true,
-          pointStyleWidth: 22,
-          boxHeight: 6,
+          boxHeight: 7,
+          boxWidth: 7,
           padding: 10,
           filter: (item) => item.text !== undefined && item.text !== '',
         },
@@ -82,7 +84,8 @@ function options(looks: ChartLooks, parts: PlotParts): ChartOptions<'scatter'> {
 export function plotChart(looks: ChartLooks, parts: PlotParts): PlotChart {
   return {
     type: 'scatter',
-    data: { datasets: [...parts.series] },
+    // later series lie over earlier ones, and the legend names them in the order given
+    data: { datasets: parts.series.map((series, k) => ({ ...series, order: parts.series.length - k })) },
     options: options(looks, parts),
   };
 }
