@@ -6,10 +6,15 @@ export function clipName(path: string): string {
   return basename(path);
 }
 
-/** The last thing ffmpeg said, without its own marks; empty where it said nothing. */
+/** A line of ffmpeg's without its marks and memory addresses, which differ from run to run. */
+export function plainWords(line: string): string {
+  const unmarked = line.replace(/^(\[[^\]]*\]\s*)+/, '').replace(/\s*\(?0x[0-9a-f]{6,}\)?/g, '');
+  return unmarked.replace(/\s*[.:]*\s*$/, '');
+}
+
+/** The last thing ffmpeg said; empty where it said nothing. */
 export function lastWords(result: FfmpegResult): string {
-  const line = result.lastLines.at(-1) ?? '';
-  return line.replace(/\[[^\]]*\]\s*/g, '').replace(/\s*[.:]*\s*$/, '');
+  return plainWords(result.lastLines.at(-1) ?? '');
 }
 
 /** One sentence on a pass over a clip that did not give what it should. */

@@ -1,4 +1,5 @@
 import type { ClipInfo } from './clip-info.ts';
+import { plainWords } from './clip-messages.ts';
 import { lumaAccess } from './pixel-format.ts';
 import type { InputListing } from './stream-listing.ts';
 
@@ -51,7 +52,7 @@ export function clipWarnings(
   const statedS = listing.endS ?? 0;
   const endsEarly = statedS - endS > Math.max(EARLY_END_S, EARLY_END_FRACTION * clip.durationS);
   if (damage !== undefined || endsEarly) {
-    const said = damage === undefined ? '' : ` ("${damage.trim()}")`;
+    const said = damage === undefined ? '' : ` ("${plainWords(damage)}")`;
     const ends = endsEarly ? `, its pictures end ${(statedS - endS).toFixed(2)} s before it does` : '';
     warnings.push(`The file is damaged or cut off${said}${ends}; copy it anew from the camera if you can.`);
   }

@@ -1,7 +1,7 @@
 import { CancelledError, InputError } from '../errors.ts';
 import type { LumaImage } from '../track/luma-image.ts';
 import type { ClipInfo } from './clip-info.ts';
-import { clipName, endedBadly } from './clip-messages.ts';
+import { clipName, endedBadly, plainWords } from './clip-messages.ts';
 import { stackedLumaFilters } from './decode-filters.ts';
 import { clipTicks, decodingPass, type FrameRange, frameRange } from './decode-plan.ts';
 import type { DecodeOptions, DecodeResult, OnFrame } from './decoded-frame.ts';
@@ -157,7 +157,7 @@ function frameUnstacker(
 }
 
 function complaintsOf(result: FfmpegResult, unlisted: number, cutShort: boolean): string[] {
-  const complaints = [...result.lastLines];
+  const complaints = result.lastLines.map(plainWords);
   if (result.reason === 'failed') complaints.push(`ffmpeg ended with status ${result.exitCode}.`);
   if (unlisted > 0)
     complaints.push(`${unlisted} decoded frames carry a timestamp the container does not list.`);

@@ -50,6 +50,6 @@ export interface DecodeResult {
   readonly doubtfulFrames: readonly number[];
   /** The rectangles really decoded (see `fitRegion`), in the order asked for. */
   readonly regions: readonly Region[];
-  /** What the decoder complained about, last lines only, one sentence each. */
+  /** What the decoder complained about, in its own words, the last lines only. */
   readonly complaints: readonly string[];
 }

@@ -1,17 +1,21 @@
 /** How long ffmpeg may be silent before it is given up, s. */
 export const DEFAULT_STALL_S = 30;
 
-/** Looks several times within the stall time, so that a stall is noticed at most a quarter late. */
+/** Looks within the stall time: a stall is noticed at most a quarter late. */
 const LOOKS_PER_STALL = 4;
 
-/** Calls `onStall` once when `alive()` has not been called for `stallS` seconds. */
+/**
+ * Calls `onStall` once when `alive()` has not been called for `stallS` seconds. It counts its own looks instead of
+ * reading a clock, so that a computer that slept, or was busy with something else, does not count as a stall.
+ */
 export class StallWatchdog {
   readonly #timer: NodeJS.Timeout;
-  #lastSign = performance.now();
+  #silentLooks = 0;
 
   constructor(stallS: number, onStall: () => void) {
     const look = (): void => {
-      if (performance.now() - this.#lastSign < stallS * 1000) return;
+      this.#silentLooks++;
+      if (this.#silentLooks < LOOKS_PER_STALL) return;
       this.end();
       onStall();
     };
@@ -20,7 +24,7 @@ export class StallWatchdog {
 
   /** Says that the watched one has just given a sign of life. */
   alive(): void {
-    this.#lastSign = performance.now();
+    this.#silentLooks = -1; // the look under way is not a whole one
   }
 
   /** Ends the watch. */
