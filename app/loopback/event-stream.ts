@@ -1,4 +1,4 @@
-import type { IncomingMessage, ServerResponse } from 'node:http';
+import type { ServerResponse } from 'node:http';
 import type { Bench } from '../shared/bench.ts';
 import type { BenchEvent } from '../shared/bench-state.ts';
 import { PAGE_HEADERS } from '../shared/content-policy.ts';
@@ -6,12 +6,7 @@ import { PAGE_HEADERS } from '../shared/content-policy.ts';
 const HEARTBEAT_MS = 15_000; // a page that went without a word is noticed by the failing write
 
 /** Pushes the bench's events to one page as server-sent events: the whole state first, then patches. */
-export function streamEvents(
-  bench: Bench,
-  request: IncomingMessage,
-  response: ServerResponse,
-  onEnd: () => void,
-): void {
+export function streamEvents(bench: Bench, response: ServerResponse, onEnd: () => void): void {
   response.writeHead(200, { ...PAGE_HEADERS, 'Content-Type': 'text/event-stream; charset=utf-8' });
   const send = (event: BenchEvent): void => {
     response.write(`data: ${JSON.stringify(event)}\n\n`);
@@ -27,7 +22,6 @@ export function streamEvents(
     unsubscribe();
     onEnd();
   };
-  request.once('close', end);
   response.once('close', end);
   response.once('error', end);
 }

@@ -91,7 +91,7 @@ export class LoopbackServer {
       return this.#call(url.pathname.slice('/op/'.length), request, response);
     if (request.method === 'POST' && url.pathname === '/upload') return this.#upload(url, request, response);
     if (request.method === 'POST') return answerText(response, 404, 'There is nothing to post to here.');
-    if (url.pathname === '/events') return this.#events(request, response);
+    if (url.pathname === '/events') return this.#events(response);
     const file = await pageFile(this.#parts.pageFolder, url.pathname);
     if (!file) return answerText(response, 404, 'There is no such page.');
     answer(response, 200, file.type, file.body);
@@ -150,14 +150,14 @@ export class LoopbackServer {
     }
   }
 
-  #events(request: IncomingMessage, response: ServerResponse): void {
+  #events(response: ServerResponse): void {
     if (this.#streams >= MOST_EVENT_STREAMS) {
       answerText(response, 429, 'Too many windows of this bench are open.');
       return;
     }
     this.#streams++;
     const leave = this.#presence.arrive();
-    streamEvents(this.#parts.bench, request, response, () => {
+    streamEvents(this.#parts.bench, response, () => {
       this.#streams--;
       leave();
     });

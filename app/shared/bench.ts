@@ -193,8 +193,13 @@ export class Bench {
     for (const notice of session.notices) this.#notice(notice);
     this.#results.refresh(session);
     this.#patch({ missing: await session.missingClips() });
-    await this.#parts.userFolder.remember({ path, title: session.test.title, openedMs: Date.now() });
-    this.#emit({ type: 'patch', patch: { recent: this.#parts.userFolder.recent } });
+    await this.#remember(session);
+  }
+
+  async #remember({ file: { path }, test: { title } }: TestSession): Promise<void> {
+    const { userFolder } = this.#parts;
+    await userFolder.remember({ path, title, openedMs: Date.now() });
+    this.#emit({ type: 'patch', patch: { recent: userFolder.recent } });
   }
 
   async #close(): Promise<void> {
@@ -230,7 +235,9 @@ export class Bench {
 
   async #change(work: (session: TestSession) => Promise<void>): Promise<void> {
     const session = this.#need();
+    const { title } = session.test;
     await work(session);
+    if (session.test.title !== title) await this.#remember(session);
     this.#patch(this.#sessionState(session));
     this.#results.refresh(session);
     if (this.#state.missing.length > 0) this.#patch({ missing: await session.missingClips() });

@@ -53,7 +53,7 @@ export class Journey {
       args: ['--no-sandbox', '--disable-gpu', '--no-first-run', '--disable-background-networking'],
     });
     const page = await browser.newPage({ viewport: { width: 1280, height: 800 } });
-    page.setDefaultTimeout(8_000);
+    page.setDefaultTimeout(30_000);
     const made = new Journey(browser, page, folder, host);
     await page.goto(address);
     await page.waitForSelector('.start, .run-sheet');

@@ -7,6 +7,7 @@ export default defineConfig({
     include: ['test/journeys/*.journey.ts'],
     globalSetup: ['test/journeys/build-first.ts'],
     testTimeout: 600_000,
+    expect: { poll: { timeout: 30_000, interval: 100 } },
     hookTimeout: 600_000,
     pool: 'forks',
     maxWorkers: 1,

@@ -1,5 +1,5 @@
 import { memo } from 'preact/compat';
-import { useEffect, useRef } from 'preact/hooks';
+import { useLayoutEffect, useRef } from 'preact/hooks';
 import type { EditableColumn } from './row-actions.ts';
 import type { RowView } from './row-view.ts';
 
@@ -64,9 +64,11 @@ function sameRow(a: RowView, b: RowView): boolean {
 function CellInput({ start, onDone }: { start: string; onDone: RowProps['onDone'] }) {
   const input = useRef<HTMLInputElement>(null);
   const done = useRef(false);
-  useEffect(() => {
+  // before the next key arrives, so that what is typed on goes in behind the first key
+  useLayoutEffect(() => {
     input.current?.focus();
     if (start.length > 1) input.current?.select();
+    else input.current?.setSelectionRange(start.length, start.length);
   }, []);
   const finish = (text: string | null, move: number): void => {
     if (done.current) return;
