@@ -37,6 +37,14 @@ function driveHzOf(test: TestFile, clip: string): number | null {
   return frequency !== undefined && frequency > 0 ? frequency : null;
 }
 
+/** Whether the exciter runs in a clip: not in a clip of free decays only. */
+function isDriven(test: TestFile, clip: string): boolean {
+  return test.configurations.some(
+    (each) =>
+      each.dwells.some((dwell) => dwell.clip === clip) || each.sweeps.some((sweep) => sweep.clip === clip),
+  );
+}
+
 function tryGeometry(test: TestFile): {
   geometries: Map<string, SetupGeometry>;
   troubles: Map<string, string>;
@@ -125,9 +133,10 @@ export function evaluateClips(test: TestFile, outcomes: ReadonlyMap<string, Clip
     }
     const driveAxis = setupAxis(
       own.flatMap((each) => {
-        const found = each.motion.drive
-          ? axisFromMotion(each.motion.drive, driveHzOf(test, each.spec.id))
-          : null;
+        const found =
+          each.motion.drive && isDriven(test, each.spec.id)
+            ? axisFromMotion(each.motion.drive, driveHzOf(test, each.spec.id))
+            : null;
         return found ? [found] : [];
       }),
     );

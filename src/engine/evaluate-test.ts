@@ -4,10 +4,17 @@ import type { ClipOutcome } from './clip-tracks.ts';
 import { failedDwell, typedDwell } from './dwell-without-clip.ts';
 import { type EvaluatedClips, evaluateClips } from './evaluate-clips.ts';
 import { evaluateDwell } from './evaluate-dwell.ts';
+import { evaluateRingDown, failedRingDown } from './evaluate-ringdown.ts';
 import { evaluateSweep, failedSweep } from './evaluate-sweep.ts';
 import { fitConfiguration } from './fit-configuration.ts';
 import { PROGRAM } from './program.ts';
-import { type DwellResult, RESULTS_FORMAT, RESULTS_VERSION, type Results } from './results.ts';
+import {
+  type DwellResult,
+  RESULTS_FORMAT,
+  RESULTS_VERSION,
+  type Results,
+  type RingDownResult,
+} from './results.ts';
 
 /** Results, and each clip's displacement of the response marker along the motion axis, mm, NaN where lost. */
 export interface Evaluation {
@@ -47,6 +54,7 @@ function whyNotMeasured(test: TestFile, evaluated: EvaluatedClips, clip: string)
 export function evaluateTest(test: TestFile, outcomes: ReadonlyMap<string, ClipOutcome>): Evaluation {
   const evaluated = evaluateClips(test, outcomes);
   const dwells: DwellResult[] = [];
+  const ringdowns: RingDownResult[] = [];
   const resonances = test.configurations.map((configuration) => {
     const own = [
       ...configuration.dwells.map((spec) => dwellResult(test, evaluated, configuration, spec)),
@@ -57,8 +65,18 @@ export function evaluateTest(test: TestFile, outcomes: ReadonlyMap<string, ClipO
           : failedSweep(configuration, sweep, whyNotMeasured(test, evaluated, sweep.clip));
       }),
     ];
+    const decays = configuration.ringdowns.map((spec) => {
+      const clip = evaluated.clips.get(spec.clip);
+      if (clip) return evaluateRingDown(configuration, spec, clip);
+      return {
+        result: failedRingDown(configuration, spec, whyNotMeasured(test, evaluated, spec.clip)),
+        levels: [],
+      };
+    });
     dwells.push(...own);
-    return fitConfiguration(configuration, own);
+    ringdowns.push(...decays.map((each) => each.result));
+    const levels = decays.filter((each) => each.result.error === null).flatMap((each) => each.levels);
+    return fitConfiguration(configuration, own, levels);
   });
   return {
     results: {
@@ -68,7 +86,7 @@ export function evaluateTest(test: TestFile, outcomes: ReadonlyMap<string, ClipO
       test: test.title,
       clips: clipResults(test, outcomes, evaluated),
       dwells,
-      ringdowns: [],
+      ringdowns,
       resonances,
     },
     displacements: new Map([...evaluated.clips].map(([id, clip]) => [id, clip.response.displacementMm])),

@@ -1,5 +1,6 @@
 import type { TestFile } from '../testfile/schema.ts';
 import { failedDwell, keptDwell, typedDwell } from './dwell-without-clip.ts';
+import { keptRingDown } from './evaluate-ringdown.ts';
 import { fitConfiguration } from './fit-configuration.ts';
 import { PROGRAM } from './program.ts';
 import { type DwellResult, RESULTS_FORMAT, RESULTS_VERSION, type Results } from './results.ts';
@@ -30,7 +31,11 @@ export function fitTest(test: TestFile): Results {
     test: test.title,
     clips: [],
     dwells,
-    ringdowns: [],
+    ringdowns: test.configurations.flatMap((configuration) =>
+      configuration.ringdowns
+        .filter((spec) => spec.measured)
+        .map((spec) => keptRingDown(configuration, spec)),
+    ),
     resonances,
   };
 }

@@ -43,6 +43,22 @@ export function withMeasured(test: TestFile, results: Results): TestFile {
         const measured = result ? kept(result, hashes.get(dwell.clip ?? '') ?? null) : null;
         return measured ? { ...dwell, measured } : dwell;
       }),
+      ringdowns: configuration.ringdowns.map((spec) => {
+        const result = results.ringdowns.find(
+          (each) => each.configuration === configuration.id && each.id === spec.id,
+        );
+        const [naturalHz, dampingRatio] = [result?.naturalHz.value, result?.dampingRatio.value];
+        if (!result || naturalHz == null || dampingRatio == null) return spec;
+        return {
+          ...spec,
+          measured: {
+            naturalHz,
+            naturalHzU: result.naturalHz.u,
+            dampingRatio,
+            dampingRatioU: result.dampingRatio.u,
+          },
+        };
+      }),
     })),
   };
 }

@@ -92,6 +92,10 @@ export interface RingDownResult {
   readonly clip: string;
   readonly naturalHz: Measured;
   readonly dampingRatio: Measured;
+  /** Swing at the start of the window, mm zero-to-peak. */
+  readonly amplitude: Measured;
+  /** Whether damping depends on the swing. */
+  readonly envelope: 'viscous' | 'friction' | 'growing-with-amplitude' | 'unknown';
   readonly window: readonly [number, number] | null;
   readonly frames: number;
   readonly sentence: string;
