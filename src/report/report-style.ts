@@ -55,13 +55,13 @@ img,svg{max-width:100%;height:auto;display:block}main>figure>img,svg.seen{width:
 .head b{font-size:11pt}.titles{display:grid;grid-template-columns:1fr 1fr;gap:0 2.4em;margin-top:.8em}.titles table{width:100%}
 .pair{display:flex;gap:1.6em;align-items:flex-start}.pair>figure{flex:none;max-width:56%}.pair>div{flex:1;min-width:0}
 .strips{display:grid;grid-template-columns:1fr 1fr;gap:.4em 1.6em}.strips figure{margin:0 0 .4em}.strips div{display:flex;gap:4px}.strips img{min-width:0}
-.formula{margin:.2em 0 .7em 1.6em;font-style:normal}
+sub,sup{font-size:75%;line-height:0}.formula{break-after:avoid;margin:.2em 0 .7em 1.6em;font-style:normal}
 .notice{border-left:3px solid var(--ink);padding:.35em .8em;margin:.7em 0;background:#f4f2ec}
 .sign{display:grid;grid-template-columns:1fr 1fr 1fr;gap:2.4em;margin-top:3.2em}.sign div{border-top:1px solid var(--ink);padding-top:.25em;font-size:8.6pt;color:var(--soft)}
 .seen{border:1px solid var(--rule)}
 @media screen and (max-width:700px){body{padding:16px}.titles,.strips{display:block}.pair{display:block}.pair>figure{width:auto;max-width:none}table{display:block;overflow-x:auto}}
 @media print{html{background:none}body{max-width:none;padding:0;min-height:0;font-size:9pt;print-color-adjust:exact;-webkit-print-color-adjust:exact}
  table{font-size:8.2pt}.small,.hash{font-size:7pt}th,td{padding:.18em .42em}caption,figcaption,.soft{font-size:8pt}
- h2,h3{break-after:avoid}figure,tr,.whole,.notice,.pair,.sign,li{break-inside:avoid}thead{display:table-header-group}caption{break-after:avoid}
+ h2,h3{break-after:avoid}figure,tr,.whole,.keep,.notice,.pair,.sign,li{break-inside:avoid}thead{display:table-header-group}caption{break-after:avoid}
  p{orphans:3;widows:3}h2.page{break-before:page;margin-top:0}}
 `;

@@ -8,8 +8,8 @@ import type { ConfigurationView } from './configuration-view.ts';
 import type { LengthUnit } from './length-unit.ts';
 
 const EVEN_STEPS = 80;
-const PEAK_STEPS = 80;
-const PEAK_BANDWIDTHS = 3; // half-power bandwidths on either side in which the curve bends most
+const PEAK_STEPS = 72;
+const PEAK_REACH_RAD = 1.42; // six half-power bandwidths in all, where the curve bends most
 const NORMAL_K = 2;
 
 /** Frequencies at which a fitted curve is drawn: evenly over the dwells, and denser about the peak, in rising order. */
@@ -20,11 +20,12 @@ export function curveFrequencies(fit: ResonanceFit, driveHz: readonly number[]):
   const [low, high] = [Math.min(...all), Math.max(...all)];
   const even = Array.from({ length: EVEN_STEPS }, (_, k) => low + ((high - low) * k) / (EVEN_STEPS - 1));
   const centre = naturalHz.value ?? 0;
-  const reach = PEAK_BANDWIDTHS * (bandwidthHz.value ?? 0);
-  const dense = Array.from(
-    { length: PEAK_STEPS },
-    (_, k) => centre + reach * ((2 * k) / (PEAK_STEPS - 1) - 1),
-  ).filter((f) => f > low && f < high);
+  const halfBandwidth = (bandwidthHz.value ?? 0) / 2;
+  // even steps of the angle about the centre of the circle plot, which the bandwidth turns by a right angle
+  const dense = Array.from({ length: PEAK_STEPS }, (_, k) => {
+    const angle = PEAK_REACH_RAD * ((2 * k) / (PEAK_STEPS - 1) - 1);
+    return centre + halfBandwidth * Math.tan(angle);
+  }).filter((f) => f > low && f < high);
   return Float64Array.from(new Set([...even, ...dense].filter((f) => f > 0))).sort();
 }
 

@@ -5,10 +5,18 @@ import {
   TRACK_STATE,
   type TrackRole,
 } from '../../src/engine/clip-tracks.ts';
-import { evaluateTest } from '../../src/engine/evaluate-test.ts';
+import { emptyDwell } from '../../src/engine/dwell-without-clip.ts';
+import { fitConfiguration } from '../../src/engine/fit-configuration.ts';
 import type { Measurement } from '../../src/engine/measure-test.ts';
+import { PROGRAM } from '../../src/engine/program.ts';
+import {
+  type BudgetLine,
+  type DwellResult,
+  RESULTS_FORMAT,
+  RESULTS_VERSION,
+} from '../../src/engine/results.ts';
 import { type SeededRandom, seededRandom } from '../../src/numeric/seeded-random.ts';
-import { type TestFile, testSchema } from '../../src/testfile/schema.ts';
+import { type Configuration, type DwellSpec, type TestFile, testSchema } from '../../src/testfile/schema.ts';
 
 /** One configuration of a made-up test. */
 export interface SyntheticConfiguration {
@@ -100,15 +108,66 @@ function tracked(
   };
 }
 
+const RELATIVE_U = {
+  'scale length': 0.0007,
+  'scale clicks': 0.0005,
+  codec: 0.001,
+  fit: 0.0005,
+  'time stamps': 1e-9,
+};
+const LAG_U_DEG = 0.3;
+const K95 = 1.96;
+
+/** What the engine would have found: the exact amplitude and lag with seeded errors of the stated uncertainties. */
+function found(
+  configuration: Configuration,
+  spec: DwellSpec,
+  motion: RigMotion,
+  seconds: number,
+  withDrive: boolean,
+  random: SeededRandom,
+): DwellResult {
+  const { amplitudeMm, lagDeg } = motion.steady ?? { amplitudeMm: 0, lagDeg: 0 };
+  const budget = Object.entries(RELATIVE_U).map(
+    ([source, share]): BudgetLine => ({ source, u: share * amplitudeMm, common: source.startsWith('scale') }),
+  );
+  const together = (of: readonly BudgetLine[]) => Math.hypot(...of.map((line) => line.u));
+  const own = together(budget.filter((line) => !line.common));
+  const amplitude = amplitudeMm + own * random.normal();
+  const u = together(budget);
+  return {
+    ...emptyDwell(configuration, spec),
+    frequency: { value: spec.driveHz ?? null, u: 1e-5 },
+    amplitude: { value: amplitude, u },
+    ...(withDrive
+      ? {
+          lag: { value: lagDeg + LAG_U_DEG * random.normal(), u: LAG_U_DEG },
+          lagU95: K95 * LAG_U_DEG,
+          driveAmplitude: { value: DRIVE_MM, u: 0.001 },
+          gain: { value: amplitude / DRIVE_MM, u: own / DRIVE_MM },
+        }
+      : {}),
+    amplitudeU95: K95 * u,
+    coverageFactor: K95,
+    independentU: own,
+    window: [0.2, seconds - 0.3],
+    frames: Math.round((seconds - 0.5) * FPS),
+    verdict: 'steady',
+    sentence: 'Steady.',
+    budget,
+  };
+}
+
 /**
- * A test with its measurement, evaluated by the engine from marker tracks that are made here from the exact solution
- * with seeded noise; no clip exists. Every seventh dwell starts from rest, so that something is settling.
+ * A test with its measurement: marker tracks made from the exact solution with seeded noise, and results as the engine
+ * would give them, without judging any motion; no clip exists. Every seventh record starts from rest.
  */
 export function syntheticTest(
   configurations: readonly SyntheticConfiguration[],
   { drive = true, secondsPerClip = 10, overrides = {} }: SyntheticFilming = {},
 ): { test: TestFile; measurement: Measurement } {
   const outcomes = new Map<string, ClipOutcome>();
+  const motions = new Map<string, RigMotion>();
   const clips: unknown[] = [];
   const specs = configurations.map(({ rig, driveHz, ...rest }) => ({
     ...rest,
@@ -119,6 +178,7 @@ export function syntheticTest(
       clips.push({ id, file: `clips/${rest.id}_${hz}Hz.mp4`, setup: 'tripod', exposure: 0.004 });
       const motion =
         number % 7 === 0 ? dwellFromRest(rig, hz, DRIVE_MM, 0, 0.3) : steadyDwell(rig, hz, DRIVE_MM, number);
+      motions.set(id, motion);
       outcomes.set(id, tracked(id, motion, secondsPerClip, drive, number));
       return { id: `d${number}`, driveHz: hz, clip: id };
     }),
@@ -140,7 +200,40 @@ export function syntheticTest(
     configurations: specs,
     ...overrides,
   });
-  return { test, measurement: { ...evaluateTest(test, outcomes), outcomes } };
+  const random = seededRandom(1);
+  const dwells: DwellResult[] = [];
+  const resonances = test.configurations.map((configuration) => {
+    const own = configuration.dwells.flatMap((spec) => {
+      const motion = motions.get(spec.clip ?? '');
+      return motion ? [found(configuration, spec, motion, secondsPerClip, drive, random)] : [];
+    });
+    dwells.push(...own);
+    return fitConfiguration(configuration, own);
+  });
+  const results: Measurement['results'] = {
+    format: RESULTS_FORMAT,
+    version: RESULTS_VERSION,
+    program: PROGRAM,
+    test: test.title,
+    clips: test.clips.map((clip, k) => ({
+      id: clip.id,
+      file: clip.file,
+      frames: Math.round(secondsPerClip * FPS),
+      duration: secondsPerClip,
+      codec: 'h264',
+      width: 1280,
+      height: 720,
+      frameRate: FPS,
+      sha256: (k + 1).toString(16).padStart(64, '0'),
+      markers: [],
+      warnings: [],
+      error: null,
+    })),
+    dwells,
+    ringdowns: [],
+    resonances,
+  };
+  return { test, measurement: { results, outcomes, displacements: new Map() } };
 }
 
 /** Drive frequencies about a resonance, closer together near it, rounded to the step of a generator. */

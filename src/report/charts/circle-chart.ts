@@ -13,7 +13,7 @@ export interface CircleData {
   readonly circle: { readonly x: number; readonly y: number; readonly radius: number } | null;
 }
 
-const MARGIN_PX = { axisY: 58, axisX: 38, edge: 8 } as const;
+const MARGIN_PX = { axisY: 58, axisX: 38, edge: 10 } as const;
 const PLOT_PX = 256;
 /** Canvas on which one unit of x is as long as one of y: the margins are fixed so that the plot itself is square. */
 export const CIRCLE_SIZE = {

@@ -47,7 +47,7 @@ export function cycleChart(data: CycleData, looks: ChartLooks = PAPER_LOOKS): Pl
       lineSeries(looks, 'fit', sine, { colour: looks.ink, widthPx: 0.9 }),
     ],
     x: { title: '', min: 0, max: 1, step: 0.5 },
-    y: { title: '', min: -reach, max: reach, mostTicks: 5 },
+    y: { title: '', min: -reach, max: reach, mostTicks: 8 },
     legend: false,
   });
 }

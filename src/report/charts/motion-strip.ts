@@ -80,7 +80,7 @@ export function motionStrip(data: MotionStripData, looks: ChartLooks = PAPER_LOO
         : []),
     ],
     x: { title: '', mostTicks: 6, ...ends(data.timesS) },
-    y: { title: '', min: -reach, max: reach, mostTicks: 5 },
+    y: { title: '', min: -reach, max: reach, mostTicks: 8 },
     legend: false,
   });
 }

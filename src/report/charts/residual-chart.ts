@@ -50,6 +50,6 @@ export function residualChart(
       ...(lag.length > 0 ? [pointSeries(looks, 'lag', lag, seriesLook(looks, 1), true)] : []),
     ],
     x: { title: 'drive frequency, Hz', ...range },
-    y: { title: '(measured − fit) / u', min: -reach, max: reach, mostTicks: 7 },
+    y: { title: 'residual, u', min: -reach, max: reach, mostTicks: 7 },
   });
 }

@@ -23,6 +23,7 @@ export function lineSeries(
 }
 
 const CAP_PX = 3;
+const WHOLE_POINT_PX = 6; // a point at the edge of the plot is drawn whole
 
 /** A point with the half-length of its error bar in the unit of y; null where the uncertainty is not known. */
 export interface BarredPoint extends PlotPoint {
@@ -66,6 +67,7 @@ export function pointSeries(
     showLine: false,
     pointRadius: looks.pointRadiusPx,
     pointStyle: look.pointStyle,
+    clip: WHOLE_POINT_PX,
     borderColor: look.colour,
     pointBorderColor: look.colour,
     pointBorderWidth: 1.4,

@@ -31,7 +31,7 @@ ${plotFigure(painter, amplitudeChart(data), AMPLITUDE_SIZE, {
 })}
 ${plotFigure(painter, residuals, RESIDUAL_SIZE, {
   alt: `Residuals of the fit of ${view.name}`,
-  caption: 'Residuals in standard uncertainties of the dwells.',
+  caption: 'Residuals: measured minus fit, in standard uncertainties u of the dwells.',
 })}
 ${
   lag
@@ -77,10 +77,10 @@ function fitPart(view: ConfigurationView, context: ReportContext): Html {
     chi2 === null || dof === null ? '' : ` χ² = ${significant(chi2, 3)} with ${dof} degrees of freedom.`;
   const correlation = correlationSentence(resonance);
   const [description, ...notes] = resonance.notes;
-  return html`<h3>Resonance fit</h3>
+  return html`<div class="keep"><h3>Resonance fit</h3>
 <p>Model: ${description ?? resonance.model}. Fitted to ${resonance.quantity} of ${resonance.points} dwells.${scatter}</p>
 <p class="formula">${resonance.formula}</p>
-${parameterTable(resonance, context.unit)}
+${parameterTable(resonance, context.unit)}</div>
 <p class="soft">${notes.map((note) => `${note} `)}${correlation}</p>
 ${view.circle ? circlePart(view, context) : halfPowerPart(view)}`;
 }

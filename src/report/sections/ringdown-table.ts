@@ -24,7 +24,7 @@ export function ringdownTable(view: ConfigurationView): Html | null {
   return html`<h3>Ring-downs</h3>
 ${htmlTable(
   [
-    { title: 'ring-down' },
+    { title: 'ring-down', kind: 'word' },
     { title: html`natural frequency ± u<br>Hz`, kind: 'number' },
     { title: html`damping ratio<br>± u`, kind: 'number' },
     { title: html`window<br>s`, kind: 'number' },
