@@ -1,4 +1,25 @@
+import type { Measured } from '../../src/numeric/measured.ts';
+import type { TrendData } from '../../src/report/charts/trend-chart.ts';
+import type { ParameterComparison } from '../../src/resonance/compare-parameters.ts';
+
 // Answers of operations that both host and page speak of.
+
+/** A quantity of several configurations against mass or setting. */
+export interface TrendAnswer {
+  readonly heading: string;
+  /** Null where there is nothing to draw. */
+  readonly data: TrendData | null;
+  /** What the trend gives. */
+  readonly quantities: readonly { readonly name: string; readonly unit: string; readonly of: Measured }[];
+  /** What to mind, or what is missing, one sentence each. */
+  readonly notes: readonly string[];
+}
+
+/** The configurations of a test side by side. */
+export interface ComparisonAnswer {
+  readonly parameters: ParameterComparison;
+  readonly trends: readonly TrendAnswer[];
+}
 
 /** What became of files that were dropped. */
 export interface Intake {

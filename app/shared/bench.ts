@@ -154,6 +154,11 @@ export class Bench {
       return bytes;
     },
 
+    compare: async () => {
+      const { test } = this.#need();
+      const { results } = this.#state;
+      return results ? this.#parts.evaluatingEngine.call('compare', { test, results }) : null;
+    },
     report: async () => {
       const session = this.#need();
       await this.#results.settled();

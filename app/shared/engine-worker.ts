@@ -3,6 +3,7 @@ import { planTest } from '../../src/engine/plan-test.ts';
 import { trackTest } from '../../src/engine/track-test.ts';
 import { findClips } from '../../src/testfile/find-clips.ts';
 import { ClipReader, clipView } from './clip-reader.ts';
+import { compareAnswer } from './compare-answer.ts';
 import { EvaluatingSession } from './evaluate-session.ts';
 import { frameRun } from './frame-run.ts';
 import { serveEngine } from './serve-engine.ts';
@@ -32,6 +33,7 @@ serveEngine(parentPort, {
   },
   evaluate: async ({ test, clips: keyed }) => session.evaluate(test, keyed),
   plan: async ({ test, results }) => planTest(test, results),
+  compare: async ({ test, results }) => compareAnswer(test, results),
   report: async ({ test }) => session.report(test),
   motion: async ({ clip }) => session.motion(clip),
   findClips: async ({ folder, wanted }, { signal }) => findClips(folder, wanted, { signal }),

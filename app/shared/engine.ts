@@ -5,6 +5,7 @@ import type { Results } from '../../src/engine/results.ts';
 import type { FoundClip, WantedClip } from '../../src/testfile/find-clips.ts';
 import type { PointPx, TestFile } from '../../src/testfile/schema.ts';
 import type { SpotJudgement } from '../../src/track/template.ts';
+import type { ComparisonAnswer } from './answers.ts';
 import type { ClipView } from './clip-view.ts';
 
 /** One displayed frame as a JPEG picture. */
@@ -61,6 +62,8 @@ export interface EngineCalls {
     answer: readonly ConfigurationPlan[];
     progress: never;
   };
+  /** The configurations side by side. */
+  compare: { args: { test: TestFile; results: Results }; answer: ComparisonAnswer; progress: never };
   /** The report of the test as of the last evaluation, as one HTML file. */
   report: { args: { test: TestFile }; answer: string; progress: never };
   /** The motion record of a clip as of the last evaluation, packed; null where it has none. */

@@ -1,7 +1,7 @@
 import * as z from 'zod';
 import { editSchema } from '../../src/testfile/edit-schema.ts';
 import type { SpotJudgement } from '../../src/track/template.ts';
-import type { FolderListing, Intake } from './answers.ts';
+import type { ComparisonAnswer, FolderListing, Intake } from './answers.ts';
 import type { ClipView } from './clip-view.ts';
 import { preferencesSchema } from './preferences.ts';
 
@@ -70,6 +70,8 @@ export const operations = {
   /** The motion record of a measured clip, packed by `tracks-bytes.ts`. */
   tracks: operation<Uint8Array>()(z.strictObject({ clip: id })),
 
+  /** The configurations side by side; null before there are results. */
+  compare: operation<ComparisonAnswer | null>()(nothing),
   /** The report as one HTML file. */
   report: operation<string>()(nothing),
 

@@ -9,6 +9,12 @@ beforeAll(async () => {
 });
 afterAll(() => way?.end());
 
+/** Selects the response marker in the list of points. */
+async function selectResponse(): Promise<void> {
+  const point = way.page.getByRole('button', { name: /^Response/ });
+  if ((await point.getAttribute('aria-pressed')) !== 'true') await point.click();
+}
+
 const firstConfiguration = (path: string): boolean => path.includes('gap3_');
 
 journey(
@@ -64,7 +70,7 @@ journey('a marker on a spot without texture is refused at once, and another spot
   const { page } = way;
   const points = demoPoints();
   await page.getByRole('link', { name: 'Measure' }).click();
-  await page.getByRole('button', { name: /^Response/ }).click();
+  await selectResponse();
   await page.getByRole('button', { name: 'Place anew' }).click();
   await way.clickPicture([12, 12]);
   await page.getByText(/too near the edge|too little texture|one direction only/).waitFor();
@@ -88,9 +94,7 @@ journey('cancel in the middle keeps what is done and leaves the rest to be measu
 
 journey('the arrow keys move a point by a tenth of a pixel, with Shift by one', async () => {
   const { page } = way;
-  await page.getByRole('button', { name: /^Response/ }).click();
-  if ((await page.getByRole('button', { name: /^Response/ }).getAttribute('aria-pressed')) !== 'true')
-    await page.getByRole('button', { name: /^Response/ }).click();
+  await selectResponse();
   const x = async (): Promise<number> =>
     Number(/x ([\d.]+) px/.exec((await page.locator('.loupe p').textContent()) ?? '')?.[1]);
   const before = await x();

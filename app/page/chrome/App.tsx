@@ -1,14 +1,26 @@
+import type { JSX } from 'preact';
+import { ComparePage } from '../compare/ComparePage.tsx';
 import { MeasurePage } from '../measure/MeasurePage.tsx';
+import { PlanPage } from '../plan/PlanPage.tsx';
+import { ReportPage } from '../report/ReportPage.tsx';
 import { ResonancePage } from '../resonance/ResonancePage.tsx';
 import { ResponseCard } from '../response/ResponseCard.tsx';
 import { RunSheet } from '../run-sheet/RunSheet.tsx';
 import { bench, connected } from '../state/bench.ts';
-import { page } from '../state/view.ts';
+import { type PageName, page } from '../state/view.ts';
 import { DropZone } from './DropZone.tsx';
 import { DialogHost } from './dialogs.tsx';
 import { Header } from './Header.tsx';
 import { Notices } from './Notices.tsx';
 import { Start } from './Start.tsx';
+
+const PAGES: Readonly<Record<PageName, () => JSX.Element>> = {
+  plan: () => <PlanPage />,
+  measure: () => <MeasurePage />,
+  resonance: () => <ResonancePage />,
+  compare: () => <ComparePage />,
+  report: () => <ReportPage />,
+};
 
 /** The whole window. */
 export function App() {
@@ -33,11 +45,13 @@ export function App() {
 function Work() {
   return (
     <>
-      <aside class="side" aria-label="Run sheet and response">
-        <RunSheet />
-        <ResponseCard />
-      </aside>
-      <main>{page.value === 'resonance' ? <ResonancePage /> : <MeasurePage />}</main>
+      {page.value !== 'report' && (
+        <aside class="side" aria-label="Run sheet and response">
+          <RunSheet />
+          <ResponseCard />
+        </aside>
+      )}
+      <main class={`page-${page.value}`}>{PAGES[page.value]()}</main>
     </>
   );
 }

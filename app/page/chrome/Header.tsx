@@ -5,8 +5,11 @@ import { Menu } from './Menu.tsx';
 import { UnitSwitch } from './UnitSwitch.tsx';
 
 const PAGES: readonly { name: PageName; label: string }[] = [
+  { name: 'plan', label: 'Plan' },
   { name: 'measure', label: 'Measure' },
   { name: 'resonance', label: 'Resonance' },
+  { name: 'compare', label: 'Compare' },
+  { name: 'report', label: 'Report' },
 ];
 
 /** Title, state of the file, and the pages. */

@@ -1,6 +1,6 @@
 import { COMMANDS, type CommandId } from '../../shared/commands.ts';
 import { addDwell, duplicateDwell, sortDwells, toggleExcluded } from '../run-sheet/row-actions.ts';
-import { ask, bench, client, job, onCommand, test } from '../state/bench.ts';
+import { ask, bench, job, onCommand, test } from '../state/bench.ts';
 import { page, shownClip } from '../state/view.ts';
 import { addConfiguration } from './configuration-actions.ts';
 import { chooseClips, chooseFolder, chooseLostFolder, chooseTest, newTest, saveAs } from './file-actions.ts';
@@ -17,7 +17,7 @@ interface Action {
   readonly when: () => boolean;
 }
 
-const ACTIONS: Partial<Record<CommandId, Action>> = {
+const ACTIONS: Readonly<Record<CommandId, Action>> = {
   'new-test': { run: newTest, when: always },
   'open-test': { run: chooseTest, when: always },
   'add-clips': { run: chooseClips, when: always },
@@ -39,6 +39,9 @@ const ACTIONS: Partial<Record<CommandId, Action>> = {
   },
   cancel: { run: () => ask('cancelMeasuring', {}), when: () => job.value !== null },
   'find-clips': { run: chooseLostFolder, when: () => (bench.value?.missing.length ?? 0) > 0 },
+  'page-plan': { run: () => show('plan'), when: hasTest },
+  'page-compare': { run: () => show('compare'), when: hasTest },
+  'page-report': { run: () => show('report'), when: hasTest },
   'page-measure': { run: () => show('measure'), when: hasTest },
   'page-resonance': { run: () => show('resonance'), when: hasTest },
   preferences: { run: showPreferences, when: always },
@@ -51,12 +54,12 @@ function show(name: typeof page.value): void {
 
 /** Whether a command can be carried out as things stand. */
 export function isAvailable(id: CommandId): boolean {
-  return ACTIONS[id]?.when() ?? false;
+  return ACTIONS[id].when();
 }
 
 /** Carries a command out, where it can be. */
 export function runCommand(id: CommandId): void {
-  if (isAvailable(id)) void ACTIONS[id]?.run();
+  if (isAvailable(id)) void ACTIONS[id].run();
 }
 
 onCommand((id) => {
@@ -74,6 +77,3 @@ if (!('dwellbook' in window))
     event.preventDefault();
     runCommand(command.id);
   });
-
-/** The client, for what is not a command. */
-export { client };

@@ -63,7 +63,9 @@ export function FrameStage() {
       role="application"
       aria-label={stageLabel()}
       aria-describedby="stage-help"
-      data-picture={clipView.value ? `${clipView.value.width}x${clipView.value.height}` : undefined}
+      data-picture={
+        clipView.value && loaded.value ? `${clipView.value.width}x${clipView.value.height}` : undefined
+      }
       onKeyDown={stageKeys}
       onBlur={() => void settle()}
     >
@@ -73,6 +75,7 @@ export function FrameStage() {
         through the frames; plus, minus and zero zoom.
       </p>
       {clipTrouble.value && <p class="stage-trouble">{clipTrouble.value}</p>}
+      {!clipTrouble.value && !loaded.value && <p class="stage-waiting">Reading the clip …</p>}
     </div>
   );
 }
@@ -167,7 +170,7 @@ function pointerHandlers() {
       drag = null;
       if (!was || !view) return;
       if ('key' in was) void settle();
-      else if (!was.moved && tool) {
+      else if (!was.moved && tool && loaded.value) {
         const at = toPicture(viewOf(view), event.offsetX, event.offsetY);
         if (isInside(at, view.width, view.height)) void place(tool, at);
       } else if (!was.moved) selectedPoint.value = null;

@@ -3,6 +3,7 @@ import { withUncertainty } from '../../../src/report/format-number.ts';
 import { PlotView } from '../charts/PlotView.tsx';
 import { amplitudeUnit } from '../format/amplitude.ts';
 import { selectDwell } from '../state/view.ts';
+import { NextDwell, shownPlan } from './NextDwell.tsx';
 import { amplitudePlot } from './response-plot.ts';
 import { shownCurve, shownFit, shownPoints } from './response-state.ts';
 
@@ -11,6 +12,7 @@ export function ResponseCard() {
   const [points, fit, curve] = [shownPoints.value, shownFit.value, shownCurve.value];
   const plot = amplitudePlot({
     ...{ points, fit, curve, unit: amplitudeUnit.value, bandK: 2, small: true },
+    nextHz: shownPlan()?.next?.driveHz ?? null,
     onDwell: selectDwell,
   });
   return (
@@ -36,6 +38,7 @@ export function ResponseCard() {
           )}
         </>
       )}
+      <NextDwell />
     </section>
   );
 }

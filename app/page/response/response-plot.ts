@@ -1,5 +1,4 @@
 import type { ResonanceResult } from '../../../src/engine/results.ts';
-import { frequencyText } from '../../../src/report/format-number.ts';
 import type { Plot, PlotPoint, PlotSeries } from '../charts/chart.ts';
 import type { AmplitudeUnit } from '../format/amplitude.ts';
 import type { FittedCurve } from './fitted-curve.ts';
@@ -54,7 +53,7 @@ function responsePlot(parts: ResponseParts, column: Column, factor: number, yTit
       ...(natural !== null && curve && !parts.small
         ? [{ x: natural, label: 'natural frequency', colour: 'faint' }]
         : []),
-      ...(nextHz == null ? [] : [{ x: nextHz, label: `next ${frequencyText(nextHz)} Hz`, colour: 'accent' }]),
+      ...(nextHz == null ? [] : [{ x: nextHz, label: 'next', colour: 'accent' }]),
     ],
     onPoint: (index, point) => {
       const list = index === lines.length ? used : index === lines.length + 1 ? excluded : [];
