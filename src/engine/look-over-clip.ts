@@ -16,13 +16,20 @@ export interface Sighting {
 
 const LOOKS = 6; // key frames to look at: enough to see most of a swing, few enough to cost nothing
 const FOUND_SCORE = 0.6;
+const CLOSE_PX = 200; // within this a light search is quicker than the thorough one
 const REACH = 0.16; // of the picture's diagonal: further away than this a look-alike is more likely than the marker
 
 function find(image: LumaImage, marker: PreparedMarker, from: { x: number; y: number }): Sighting | null {
-  const radiusPx = REACH * Math.hypot(image.width, image.height);
-  const near = searchCoarsely(image, marker.template, { near: { ...from, radiusPx }, minScore: FOUND_SCORE });
+  const reachPx = REACH * Math.hypot(image.width, image.height);
+  const search = { minScore: FOUND_SCORE };
+  const close = searchCoarsely(image, marker.template, {
+    near: { ...from, radiusPx: Math.min(reachPx, CLOSE_PX) },
+    ...search,
+  });
+  const near =
+    close ?? findTemplate(image, marker.template, { near: { ...from, radiusPx: reachPx }, ...search });
   // A marker that stands elsewhere at the start of this clip is sought in the whole picture.
-  const found = near ?? findTemplate(image, marker.template, { minScore: FOUND_SCORE });
+  const found = near ?? findTemplate(image, marker.template, search);
   if (!found || (near === null && found.ambiguous)) return null;
   return { frame: 0, x: found.x, y: found.y, score: found.score };
 }

@@ -1,7 +1,7 @@
 import type { CameraKnowledge } from '../plan/camera-advice.ts';
 import type { PlanInput } from '../plan/plan.ts';
 import type { PlanFit, PlanPoint } from '../plan/plan-points.ts';
-import type { FrequencySource } from '../plan/starting-knowledge.ts';
+import type { DampingGuess, FrequencySource } from '../plan/starting-knowledge.ts';
 import { fitResonance } from '../resonance/resonance-fit.ts';
 import type { ResonanceFit } from '../resonance/resonance-fit-types.ts';
 import type { Configuration, PlanningSpec, TestFile } from '../testfile/schema.ts';
@@ -40,6 +40,11 @@ function start(
   return naturalHz === undefined
     ? null
     : { kind: 'stated', naturalHz, ...(naturalHzU === undefined ? {} : { uHz: naturalHzU }) };
+}
+
+function damping({ dampingRatio, dampingRatioRange: range }: PlanningSpec): DampingGuess | null {
+  if (dampingRatio === undefined) return null;
+  return range ? { ratio: dampingRatio, low: range[0], high: range[1] } : { ratio: dampingRatio };
 }
 
 function points(dwells: readonly DwellResult[]): PlanPoint[] {
@@ -132,7 +137,7 @@ export function planInput(
   return {
     model: { excitation: configuration.excitation, damping: configuration.damping ?? 'viscous' },
     start: start(configuration, planning, ringdowns),
-    damping: planning.dampingRatio === undefined ? null : { ratio: planning.dampingRatio },
+    damping: damping(planning),
     gainMm: planning.staticDeflection === undefined ? null : { value: planning.staticDeflection, u: null },
     points: known,
     fit,
@@ -141,6 +146,7 @@ export function planInput(
     resolutionHz: planning.resolutionHz ?? null,
     observed: known.some((point) => point.lagDeg != null) ? 'amplitude-and-lag' : 'amplitude',
     camera: camera(test, planning),
+    situations: planning.situations ?? [],
     ...(planning.dwells === undefined ? {} : { dwells: planning.dwells }),
     ...(planning.leftover === undefined ? {} : { leftover: planning.leftover }),
     ...(planning.amplitudeRelativeU === undefined ? {} : { amplitudeRelativeU: planning.amplitudeRelativeU }),

@@ -4,6 +4,7 @@ import { fitRegion, type Region } from '../clip/region.ts';
 import { trueTimes } from '../clip/true-times.ts';
 import { InputError } from '../errors.ts';
 import type { ClipSpec } from '../testfile/schema.ts';
+import type { MotionModel } from '../track/adaptive-registrar.ts';
 import { TemplateAverager } from '../track/averaged-template.ts';
 import { MarkerTracker } from '../track/marker-tracker.ts';
 import type { ClipFacts, ClipTracks, MarkerTrack } from './clip-tracks.ts';
@@ -38,6 +39,8 @@ interface Pass {
   readonly complaints: readonly string[];
   readonly cramped: boolean;
   readonly averagers: readonly TemplateAverager[];
+  /** Motion model each marker ended with. */
+  readonly models: readonly MotionModel[];
 }
 
 /** One decoding pass over the clip with every marker followed in it; ends early when a marker needs more room. */
@@ -47,6 +50,7 @@ async function trackOnce(
   sightings: readonly (readonly Sighting[])[],
   regions: readonly Region[],
   mayGrow: boolean,
+  models: readonly MotionModel[],
   context: DecodeContext,
   onTracked: OnTracked,
 ): Promise<Pass> {
@@ -55,7 +59,10 @@ async function trackOnce(
   const recorders = markers.map((marker) => new TrackRecorder(marker, info.frameCount));
   const trackers = markers.map((marker, k) => {
     const first = sightings[k]?.find((seen) => seen.frame === 0);
-    return new MarkerTracker(marker.template, first ? { start: first } : {});
+    return new MarkerTracker(marker.template, {
+      ...(first ? { start: first } : {}),
+      model: models[k] ?? 'auto',
+    });
   });
   const decoded = regions.map((region) => fitRegion(region, info));
   const averagers = job.refine ? markers.map((marker) => new TemplateAverager(marker.template)) : [];
@@ -77,7 +84,7 @@ async function trackOnce(
         if (!image || !region || !recorder) throw new Error('a marker without its region');
         const step = tracker.step(image, region.x, region.y, timesS[frame.index] ?? frame.timeS);
         recorder.add(step, frame.doubtful);
-        if (step.state === 'ok' && !frame.doubtful && done % stride === 0) {
+        if (step.state === 'ok' && step.blurPx === 0 && !frame.doubtful && done % stride === 0) {
           averagers[k]?.add(image, region.x, region.y, step.x, step.y, tracker.deformation);
         }
         if (step.nearBorder && mayGrow && !whole) cramped = true;
@@ -96,6 +103,7 @@ async function trackOnce(
     complaints: result.complaints,
     cramped,
     averagers,
+    models: trackers.map((tracker) => tracker.model),
   };
 }
 
@@ -184,11 +192,11 @@ export async function trackClip(
     const last = k === GROWTHS.length - 1;
     if (unseen && !last) continue;
     regions = planRegions(info, wishes, growth);
-    pass = await trackOnce(job, setup.markers, sightings, regions, !last, context, onTracked);
+    pass = await trackOnce(job, setup.markers, sightings, regions, !last, [], context, onTracked);
     if (!pass.cramped) break;
   }
   if (!pass) throw new Error('no pass was made');
-  const { averagers } = pass;
+  const { averagers, models } = pass;
   const done = job.refine
     ? await trackOnce(
         { ...job, refine: false },
@@ -196,6 +204,7 @@ export async function trackClip(
         sightings,
         regions,
         false,
+        models,
         context,
         onTracked,
       )

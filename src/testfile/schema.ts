@@ -182,6 +182,10 @@ const planning = z.looseObject({
   /** Stiffness, N/m; with the configuration's moving mass it gives the natural frequency. */
   stiffness: z.number().positive().optional(),
   dampingRatio: z.number().positive().optional(),
+  /** Range that the damping ratio very likely lies in; a factor of two either way where absent. */
+  dampingRatioRange: z.tuple([z.number().positive(), z.number().positive()]).optional(),
+  /** What about the rig calls for a caution of its own. */
+  situations: z.array(z.enum(['magnets', 'added-masses'])).optional(),
   /** The smallest step of the generator, Hz. */
   resolutionHz: z.number().positive().optional(),
   /** Static deflection, mm: the amplitude well below resonance. */
