@@ -21,6 +21,9 @@ export interface BenchClip {
   readonly amplitudeMm: number;
 }
 
+/** What is kept beside a clip that has been drawn. */
+type CachedClip = Pick<BenchClip, 'amplitudeMm'>;
+
 const FPS = 60;
 // 24 frames a period: the scene repeats, and only the noise has to be drawn anew.
 const DRIVE_HZ = 2.5;
@@ -48,7 +51,16 @@ export async function benchClips(options: BenchOptions): Promise<BenchClip[]> {
       scene ??= breadboardRig({ widthPx, heightPx, busy: true });
       await draw(scene, { ...encoding, mbitPerS }, frames, key, description);
     }
-    clips.push({ name, ...(JSON.parse(await readFile(description, 'utf8')) as Omit<BenchClip, 'name'>) });
+    const known = JSON.parse(await readFile(description, 'utf8')) as CachedClip;
+    clips.push({
+      name,
+      file: join(CACHE, `${key}.mp4`),
+      oneMarker: testFilePath(key, 1),
+      threeMarkers: testFilePath(key, 3),
+      frames,
+      mbitPerS,
+      ...known,
+    });
   }
   return clips;
 }
@@ -69,18 +81,14 @@ async function draw(
   const truth = await renderClip(scene, motion, camera, part, encoding);
   await rename(part, file);
   const markers = ['response', 'drive', 'ground'] as const;
-  const write = async (count: 1 | 3): Promise<string> => {
-    const path = join(CACHE, `${key}-${count}.dwellbook`);
-    await writeFile(path, testFile(scene, truth, `${key}.mp4`, DRIVE_HZ, markers.slice(0, count)));
-    return path;
-  };
-  const clip: Omit<BenchClip, 'name'> = {
-    file,
-    oneMarker: await write(1),
-    threeMarkers: await write(3),
-    frames,
-    mbitPerS: encoding.mbitPerS!,
-    amplitudeMm: truth.steady!.amplitudeMm,
-  };
-  await writeFile(description, JSON.stringify(clip, null, 2));
+  for (const count of [1, 3] as const) {
+    const text = testFile(scene, truth, `${key}.mp4`, DRIVE_HZ, markers.slice(0, count));
+    await writeFile(testFilePath(key, count), text);
+  }
+  const known: CachedClip = { amplitudeMm: truth.steady!.amplitudeMm };
+  await writeFile(description, JSON.stringify(known));
+}
+
+function testFilePath(key: string, markers: 1 | 3): string {
+  return join(CACHE, `${key}-${markers}.dwellbook`);
 }
