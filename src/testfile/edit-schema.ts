@@ -67,6 +67,7 @@ const scaleChanges = z.object({
   cameraToMotion: finite.positive().nullable().optional(),
 });
 
+/** Shape of an edit: one small change of the test file, as data that can be journalled and undone. */
 export const editSchema = z.discriminatedUnion('kind', [
   z.object({ kind: z.literal('title'), title: text }),
   z.object({ kind: z.literal('add-configuration'), id, label: text, like: id.optional() }),

@@ -232,7 +232,7 @@ export const testSchema = z.looseObject({
 
 /** A point of the frame as displayed, px. */
 export type PointPx = z.infer<typeof pointPx>;
-/** A whole test. */
+/** A whole test file. */
 export type TestFile = z.infer<typeof testSchema>;
 /** A fixed camera position. */
 export type Setup = TestFile['setups'][number];
