@@ -1,5 +1,5 @@
-import { createRequire } from 'node:module';
 import { resolve } from 'node:path';
+import createCommand from 'fluent-ffmpeg';
 import type { ClipContainer } from './clip-info.ts';
 
 // The one file that touches fluent-ffmpeg. Only its argument builder is used: it orders input options, input,
@@ -12,7 +12,8 @@ interface CommandBuilder {
   output(target: string): CommandBuilder;
   _getArguments(): string[];
 }
-const fluentFfmpeg = createRequire(import.meta.url)('fluent-ffmpeg') as () => CommandBuilder;
+// The published types leave out the method that gives the arguments without running anything.
+const buildCommand = createCommand as unknown as () => CommandBuilder;
 
 /** One pass of ffmpeg over one clip, its result on standard output. */
 export interface FfmpegPass {
@@ -46,7 +47,7 @@ export function ffmpegArguments(pass: FfmpegPass): string[] {
     ...(pass.inputOptions ?? []),
     ...['-f', pass.container],
   ];
-  const command = fluentFfmpeg()
+  const command = buildCommand()
     .input(`file:${resolve(pass.path)}`)
     .inputOptions(guarded)
     // The first real picture stream: 'V' leaves cover pictures out.
