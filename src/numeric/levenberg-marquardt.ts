@@ -26,7 +26,7 @@ const SUM_ROUNDING = 1e-12;
  *
  * @param start start values, length parameterCount, finite
  * @throws Error where the problem is malformed (lengths disagree, fewer residuals than parameters)
- * Source: J. J. Moré, Lecture Notes in Mathematics 630 (1978) 105 (from memory).
+ * Source: J. J. Moré, Springer LNM 630 (1978) 105 (from memory).
  */
 export function solveLeastSquares(
   problem: LeastSquaresProblem,

@@ -52,8 +52,8 @@ const RADIUS_SLACK = 0.1;
 /**
  * The Levenberg-Marquardt step whose length is at most `radius`: the full Gauss-Newton step where that is short
  * enough, else the damped one that reaches the radius within a tenth.
- * Source: J. J. Moré, The Levenberg-Marquardt algorithm: implementation and theory, Lecture Notes in
- * Mathematics 630 (1978) 105, section 5 (from memory); here the damping is found from the singular values.
+ * Source: J. J. Moré, The Levenberg-Marquardt algorithm: implementation and theory, Springer LNM
+ * 630 (1978) 105, section 5 (from memory); here the damping is found from the singular values.
  */
 export function dampedStep(model: LocalModel, radius: number): DampedStep {
   const damping = dampingForRadius(model, radius);
