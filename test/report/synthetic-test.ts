@@ -245,7 +245,7 @@ export function frequenciesAbout(naturalHz: number, dampingRatio: number, count:
 }
 
 /** Forty dwells in three configurations that differ in the setting. */
-export function fortyDwells(overrides: Record<string, unknown> = {}) {
+export function fortyDwells(overrides: Record<string, unknown> = {}, secondsPerClip = 10) {
   const rig = (naturalHz: number, dampingRatio: number): Rig => ({ naturalHz, dampingRatio, staticGain: 1 });
   return syntheticTest(
     [
@@ -274,6 +274,6 @@ export function fortyDwells(overrides: Record<string, unknown> = {}) {
         setting: 6,
       },
     ],
-    { overrides },
+    { overrides, secondsPerClip },
   );
 }

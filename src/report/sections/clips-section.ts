@@ -59,6 +59,6 @@ ${
       )
 }
 ${clipRemarks(clips)}
-<p>The same test file, the same clips (by their SHA-256) and ${program} give the same numbers.</p>
+<p>The same test file${clips.length > 0 ? ', the same clips (by their SHA-256)' : ''} and ${program} give the same numbers.</p>
 ${reproduction(context)}`;
 }

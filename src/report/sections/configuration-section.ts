@@ -26,8 +26,7 @@ function responsePlots(view: ConfigurationView, { painter, unit }: ReportContext
   return html`<h3>Response</h3>
 ${plotFigure(painter, amplitudeChart(data), AMPLITUDE_SIZE, {
   alt: `Amplitude against drive frequency of ${view.name}, dwells and fitted curve`,
-  caption:
-    'Amplitude against drive frequency. Bars: ± U of each dwell without what all dwells share; band: 95 % interval of the fitted curve.',
+  caption: `Amplitude against drive frequency. Bars: ± U of each dwell without what all dwells share${data.curve ? '; band: 95 % interval of the fitted curve' : ''}.`,
 })}
 ${plotFigure(painter, residuals, RESIDUAL_SIZE, {
   alt: `Residuals of the fit of ${view.name}`,
@@ -39,7 +38,7 @@ ${
         alt: `Lag against drive frequency of ${view.name}`,
         caption: 'Lag of the response behind the drive. Bars: ± U.',
       })
-    : html`<p>No lag was measured: there is no drive marker in view, so there is no lag and no circle plot.</p>`
+    : html`<p>No lag was measured, so there is neither a lag plot nor a circle plot; a drive marker in view would give one.</p>`
 }`;
 }
 
