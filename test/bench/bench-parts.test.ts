@@ -34,6 +34,14 @@ describe('timed process', () => {
     expect(child.peakMb! - plain.peakMb!).toBeGreaterThan(150);
   });
 
+  it.runIf(process.platform === 'linux')('counts processor time of a child, not waiting', async () => {
+    const busy = 'const end = process.cpuUsage().user + 6e5; while (process.cpuUsage().user < end);';
+    const used = await node(`require('child_process').execFileSync(process.execPath, ['-e', '${busy}'])`);
+    const idle = await node('setTimeout(() => {}, 600)');
+    expect(used.processorS).toBeGreaterThan(0.5);
+    expect(idle.processorS).toBeLessThan(used.processorS! - 0.4);
+  });
+
   it('hands over the output and its last words on failure', async () => {
     expect((await node('console.log(6 * 7)')).stdout).toBe('42\n');
     await expect(node('console.error("no such rig"); process.exit(3)')).rejects.toThrow(

@@ -43,17 +43,19 @@ function run(way: Way, clip: BenchClip, ffmpeg: string, options: BenchOptions): 
 }
 
 function speedTable(runs: ReadonlyMap<BenchClip, Runs>, options: BenchOptions): string {
-  const rows = [['clip', 'way', 'frames/s', 'ratio to decode only', 'peak memory, MB']];
+  const rows = [['clip', 'way', 'frames/s', 'to decode only', 'processor, ms a frame', 'peak memory, MB']];
   for (const [clip, done] of runs) {
     for (const way of WAYS) {
       const rates = done[way].map(({ seconds }) => clip.frames / seconds);
       const ratios = done[way].map(({ seconds }, round) => done['decode only'][round]!.seconds / seconds);
-      const peaks = done[way].map(({ peakMb }) => peakMb).filter((peak) => peak !== null);
+      const used = known(done[way].map(({ processorS }) => processorS)).map((s) => (1000 * s) / clip.frames);
+      const peaks = known(done[way].map(({ peakMb }) => peakMb));
       rows.push([
         `${clip.name} ${clip.mbitPerS} Mbit/s`,
         way,
         spread(rates, 1),
         way === 'decode only' ? '' : spread(ratios, 3),
+        used.length > 0 ? spread(used, 2) : 'not known',
         peaks.length > 0 ? Math.max(...peaks).toFixed(0) : 'not known',
       ]);
     }
@@ -61,6 +63,10 @@ function speedTable(runs: ReadonlyMap<BenchClip, Runs>, options: BenchOptions): 
   const rounds = options.rounds === 1 ? '1 round' : `${options.rounds} rounds in turn, median (least-most)`;
   const size = options.short ? '640 x 360' : '1920 x 1080';
   return `\nEnd to end, whole processes, ${size}, ${rounds}:\n${table(rows)}`;
+}
+
+function known(values: readonly (number | null)[]): number[] {
+  return values.filter((value) => value !== null);
 }
 
 function registrationTable(options: BenchOptions): string {

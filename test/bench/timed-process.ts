@@ -1,11 +1,9 @@
 import { spawn } from 'node:child_process';
-import { watchMemory } from './peak-memory.ts';
+import { type Usage, watchProcesses } from './watch-processes.ts';
 
 /** How a whole process fared, from its start to its end. */
-export interface TimedProcess {
+export interface TimedProcess extends Usage {
   readonly seconds: number;
-  /** Peak memory of it and its descendants, MB; null where that cannot be seen. */
-  readonly peakMb: number | null;
   readonly stdout: string;
 }
 
@@ -24,7 +22,7 @@ export async function runTimed(program: string, args: readonly string[]): Promis
   child.stderr.on('data', (text: Buffer) => {
     stderr = (stderr + text.toString()).slice(-2000);
   });
-  const memory = child.pid === undefined ? null : watchMemory(child.pid);
+  const watch = child.pid === undefined ? null : watchProcesses(child.pid);
   try {
     await new Promise<void>((resolve, reject) => {
       child.on('error', reject);
@@ -34,8 +32,8 @@ export async function runTimed(program: string, args: readonly string[]): Promis
       });
     });
   } finally {
-    memory?.stop();
+    watch?.stop();
   }
   const seconds = Number(process.hrtime.bigint() - start) / 1e9;
-  return { seconds, peakMb: memory?.stop() ?? null, stdout };
+  return { seconds, stdout, ...(watch?.stop() ?? { peakMb: null, processorS: null }) };
 }
