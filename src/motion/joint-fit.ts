@@ -108,6 +108,13 @@ export function fitJoint(samples: Samples, options: JointFitOptions): JointFit |
   return best === null ? null : describe(samples, best, options);
 }
 
+/** The transient of a joint fit at one time, in the unit of the samples. */
+export function transientAt(joint: JointFit, timeS: number): number {
+  const elapsed = timeS - joint.originS;
+  const angle = 2 * Math.PI * joint.dampedHz * elapsed + joint.transientPhaseRad;
+  return joint.transient * Math.exp(-joint.decayRatePerS * elapsed) * Math.cos(angle);
+}
+
 /** Whether the best start takes so little off the steady fit's residual that refining it cannot find a transient. */
 function hopeless(
   model: DecayingModel,

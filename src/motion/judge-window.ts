@@ -1,5 +1,5 @@
 import { type Measured, measured } from '../numeric/measured.ts';
-import { durationS, type Samples, spanS } from '../sine/samples.ts';
+import { type Samples, spanS } from '../sine/samples.ts';
 import type { JointFit } from './joint-fit.ts';
 import type { FrequencyKnowledge, MotionModel } from './motion-model.ts';
 import { withoutForeignMotion } from './other-tones.ts';
@@ -33,23 +33,21 @@ export interface WindowJudgement {
   readonly toneHz: number | null;
   readonly leftover: Measured;
   readonly leftoverEffect: number | null;
-  readonly change: Measured;
 }
 
 /** Leftover a window begins with where the record allows, and the most that is still called steady. */
 export const LEFTOVER_AIM = 0.01;
+/** The most leftover that is still called steady, a fraction of the amplitude. */
 export const LEFTOVER_LIMIT = 0.02;
 
 // Change of amplitude over a window that is called drifting, beyond its noise.
-const CHANGE_LIMIT = 0.005;
+const CHANGE_LIMIT = 0.003;
+// Swelling and shrinking without decay that is called beating.
+const BEAT_LIMIT = 0.01;
 // Wandering of the block amplitudes that is called unsteady, beyond its noise.
 const STRAY_LIMIT = 0.02;
 // Exciter and camera keep time to about this; a frequency difference below it is nobody's fault.
 const CLOCK_TOLERANCE = 2e-4;
-// Below this many periods a slowly decaying transient (damping ratio 0.004 and more) can look like an even phase slide.
-const PERIODS_TO_TELL_A_SLIDE = 20;
-// A slide larger than this is more than a leftover could feign.
-const SLIDE_OF_A_LEFTOVER_RAD = 0.15;
 
 /** Leftover at a time of the joint fit's record, as a fraction of the steady amplitude. */
 export function leftoverAt(joint: JointFit, timeS: number): number {
@@ -121,17 +119,15 @@ function blockFinding(blocks: Steadiness | null): Finding | null {
       ? { kind: 'trend', change: blocks.change }
       : { kind: 'wander', excursion: blocks.excursion };
   }
-  const changed = Math.abs(blocks.change) > CHANGE_LIMIT + 4 * blocks.changeU;
+  const changed = Math.abs(blocks.change) > CHANGE_LIMIT + 3 * blocks.changeU;
   return changed ? { kind: 'trend', change: blocks.change } : null;
 }
 
-/** A measured frequency that a short record cannot tell from a transient in quadrature. */
+/** A measured frequency that the record cannot tell from a slow transient. */
 function slideFinding(samples: Samples, model: MotionModel, driveHz: number): Finding | null {
   const off = model.frequencyHz - driveHz;
   const slideRad = 2 * Math.PI * Math.abs(off) * spanS(samples);
-  const short = durationS(samples) * driveHz < PERIODS_TO_TELL_A_SLIDE;
-  const ambiguous = Math.abs(off) > CLOCK_TOLERANCE * driveHz && slideRad < SLIDE_OF_A_LEFTOVER_RAD;
-  return short && ambiguous
+  return model.frequencyInDoubt && Math.abs(off) > CLOCK_TOLERANCE * driveHz
     ? { kind: 'slide', degrees: (slideRad * 180) / Math.PI, measuredHz: model.frequencyHz }
     : null;
 }
@@ -155,7 +151,6 @@ export function judgeWindow(
     model.frequencyHz,
     joint?.conditioned ? joint.amplitude : steady.amplitude,
   );
-  const change = measured(blocks?.change ?? null, blocks?.changeU ?? null);
   const told = (finding: Finding, leftover: Measured, leftoverEffect: number | null): WindowJudgement => ({
     windowS,
     finding,
@@ -163,7 +158,6 @@ export function judgeWindow(
     toneHz,
     leftover,
     leftoverEffect,
-    change,
   });
 
   if (joint === null) {
@@ -189,6 +183,8 @@ export function judgeWindow(
   }
   // steady and transient cannot be told apart, but how much they move can
   const excursion = excursionOf(joint);
-  if (excursion <= CHANGE_LIMIT) return told({ kind: 'steady' }, measured(null), excursion);
+  // a beat is seen whole, so its size is its size; a slow change may be the beginning of a large one
+  const limit = transientFinding(joint).kind === 'beat' ? BEAT_LIMIT : CHANGE_LIMIT;
+  if (excursion <= limit) return told({ kind: 'steady' }, measured(null), excursion);
   return told(transientFinding(joint), measured(null), null);
 }

@@ -1,7 +1,8 @@
+import { projectedSum, projectModel } from '../sine/decaying-model.ts';
 import { fitSine } from '../sine/four-parameter.ts';
-import type { Samples } from '../sine/samples.ts';
+import { durationS, type Samples } from '../sine/samples.ts';
 import type { SineFit } from '../sine/sine-fit.ts';
-import { fitSineAtFrequency } from '../sine/three-parameter.ts';
+import { fitSineAtFrequency, recordCentre } from '../sine/three-parameter.ts';
 import { fitJoint, type JointFit } from './joint-fit.ts';
 import { steadiness, strays } from './steadiness.ts';
 
@@ -23,6 +24,11 @@ export interface MotionModel {
   readonly free: SineFit | null;
   /** Steady and decaying motion together, only where the samples demand a transient. */
   readonly joint: JointFit | null;
+  /**
+   * True where the frequency was measured and differs from the set one, but the set one with a slowly dying transient
+   * describes the samples as well.
+   */
+  readonly frequencyInDoubt: boolean;
   /** False where even this description leaves something that wanders with the drive frequency. */
   readonly adequate: boolean;
 }
@@ -30,9 +36,9 @@ export interface MotionModel {
 /** Slow baseline of every fit of a dwell: an offset and a slope, for a camera that sags. */
 export const BASELINE_TERMS = 2;
 
-// A parameter must earn its place by lowering the residual by this many noise variances (three and a half standard
-// deviations).
-const COST_PER_PARAMETER = 12;
+// A parameter must earn its place by lowering the residual by this many noise variances: a transient of noise alone
+// passes in about one record of a hundred.
+const COST_PER_PARAMETER = 8;
 // Residuals below this share of the amplitude are rounding, not motion.
 const ROUNDING = 1e-7;
 // A transient or foreign tone below this share of the amplitude is not worth a word.
@@ -63,7 +69,9 @@ export function chooseModel(
   const joints: JointFit[] = [];
   const addJoint = (hz: number, driveFree: boolean, residuals: Float64Array) => {
     const joint = fitJoint(samples, { ...options, driveHz: hz, driveFree, steadyResiduals: residuals });
-    if (joint !== null && joint.leftover > NEGLIGIBLE) joints.push(joint);
+    // of two free tones the one that outlasts the other is the dwell, whatever the fit calls it
+    const swapped = driveFree && joint !== null && joint.leftoverAtEnd > 1;
+    if (joint !== null && joint.leftover > NEGLIGIBLE && !swapped) joints.push(joint);
     return joint;
   };
   if (known) {
@@ -105,8 +113,38 @@ export function chooseModel(
     steady: fit,
     free,
     joint: best.joint,
+    frequencyInDoubt:
+      knowledge === 'set' &&
+      best.joint === null &&
+      best.measured &&
+      transientRivals(samples, driveHz, best.fit, noise),
     adequate: !leavesStray(samples, best.joint ?? fit, frequencyHz),
   };
+}
+
+// Damping ratios of the slow transients that an even phase slide is weighed against, and how much more residual, in
+// noise variances, still counts as describing it as well.
+const RIVAL_DAMPING = [0.003, 0.008];
+const RIVAL_MARGIN = 25;
+
+/** Whether a slow transient at the set frequency explains what a measured frequency explains. */
+function transientRivals(samples: Samples, driveHz: number, free: SineFit, noise: number): boolean {
+  const model = {
+    originS: samples.timesS[0]!,
+    ...recordCentre(samples),
+    baselineTerms: BASELINE_TERMS,
+    steady: { frequencyHz: driveHz, free: false },
+  };
+  const limit = free.residualSumOfSquares + RIVAL_MARGIN * noise;
+  const stepHz = 0.1 / durationS(samples);
+  for (const ratio of RIVAL_DAMPING) {
+    for (let k = -8; k <= 8; k++) {
+      const omega = 2 * Math.PI * (driveHz + k * stepHz);
+      if (omega > 0 && projectedSum(projectModel(model, samples, [ratio * omega, omega]), samples) < limit)
+        return true;
+    }
+  }
+  return false;
 }
 
 /** Noise variance per frame at the signal, back from the amplitude's uncertainty. */

@@ -80,7 +80,6 @@ function afterTransient(
     toneHz: whole.toneHz,
     leftover: { value: size, u: (size * joint.leftoverU) / joint.leftover },
     leftoverEffect: effectOn(joint, windowS, frequencyHz),
-    change: { value: blocks?.change ?? null, u: blocks?.changeU ?? null },
   };
 }
 
@@ -108,6 +107,8 @@ export function findSteadyWindow(
   if (steady) return whole;
   // a transient that explains everything is there to the end: a part only hides it
   if (whole.model.joint !== null && whole.model.adequate) return whole;
+  // a change that goes on all the time is in every part, only smaller
+  if (whole.finding.kind === 'trend' || whole.finding.kind === 'slide') return whole;
 
   const [first, span] = [samples.timesS[0]!, spanS(samples)];
   for (const [from, to] of PARTS) {

@@ -69,7 +69,7 @@ export function sentenceOf(
     case 'slide':
       return (
         `The phase slid by ${Number(finding.degrees.toPrecision(2))} degrees in ${seconds(span)}: the motion has not ` +
-        `settled, or the drive runs at ${hertz(finding.measuredHz)}; film at least 20 periods to tell.`
+        `settled, or the drive runs at ${hertz(finding.measuredHz)}; film longer to tell.`
       );
     case 'wander':
       return (

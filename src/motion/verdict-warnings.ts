@@ -12,6 +12,8 @@ export interface WarningFacts {
   readonly windowS: readonly [number, number];
   readonly driveHz: number | null;
   readonly judged: WindowJudgement;
+  /** Change of the amplitude over the window, as a fraction. */
+  readonly drift: Measured;
   readonly harmonics: readonly Measured[];
   readonly frames: { readonly total: number; readonly lost: number };
   readonly periods: number;
@@ -75,8 +77,8 @@ export function dwellWarnings(facts: WarningFacts): MotionWarning[] {
         'is the fit, not seen.',
     );
   }
-  const drift = judged.change.value ?? 0;
-  if (steady && Math.abs(drift) > DRIFT_REMARK && Math.abs(drift) > 3 * (judged.change.u ?? 0)) {
+  const drift = facts.drift.value ?? 0;
+  if (steady && Math.abs(drift) > DRIFT_REMARK && Math.abs(drift) > 3 * (facts.drift.u ?? 0)) {
     warn('slow-drift', `The amplitude changed by ${percent(Math.abs(drift))} over the window.`);
   }
   if (!steady && model.joint !== null && !model.joint.conditioned) {

@@ -1,29 +1,12 @@
-import { measured, NOT_MEASURED } from '../numeric/measured.ts';
-import { fitSine } from '../sine/four-parameter.ts';
-import { harmonicRatios } from '../sine/harmonics.ts';
-import { fitLag } from '../sine/lag.ts';
-import { durationS, medianIntervalS, presentSamples, type Samples, spanS } from '../sine/samples.ts';
-import { fitSineAtFrequency } from '../sine/three-parameter.ts';
+import { durationS, medianIntervalS, presentSamples } from '../sine/samples.ts';
 import { driveFrequency } from './drive-frequency.ts';
-import type { DwellJudgement, MotionWarning, Verdict } from './dwell-judgement.ts';
-import { judgeWindow, type WindowJudgement } from './judge-window.ts';
-import { BASELINE_TERMS } from './motion-model.ts';
+import type { DwellJudgement, JudgeOptions } from './dwell-judgement.ts';
+import { judgeWindow } from './judge-window.ts';
+import { measureWindow, unmeasured } from './measure-window.ts';
 import type { MotionRecord } from './motion-record.ts';
-import { noiseFloorOf } from './noise-floor.ts';
 import { countFrames, requireOrderedRecord, seconds } from './record-checks.ts';
-import { findSteadyWindow, wholePeriods } from './steady-window.ts';
-import { hertz, millimetres, sentenceOf, verdictOf } from './verdict-sentences.ts';
-import { dwellWarnings } from './verdict-warnings.ts';
-
-/** How a dwell is to be judged. */
-export interface JudgeOptions {
-  /** What the exciter was set to, Hz; null where it is not known and must be measured. */
-  readonly driveHz: number | null;
-  /** Judge this part of the record, seconds; found where absent. */
-  readonly window?: readonly [number, number];
-  /** The exciter's own motion at the same times, for the lag and the drive's true frequency. */
-  readonly driveRecord?: MotionRecord;
-}
+import { findSteadyWindow } from './steady-window.ts';
+import { hertz } from './verdict-sentences.ts';
 
 const FEWEST_PERIODS = 2;
 const FEWEST_FRAMES = 10;
@@ -88,7 +71,7 @@ export function judgeDwell(record: MotionRecord, options: JudgeOptions): DwellJu
       'the frame rate is a whole multiple of it, or too few frames were seen.';
     return unmeasured(record, 'failed', why, window);
   }
-  return describe(record, options, samples, judged);
+  return measureWindow(record, options, samples, judged);
 }
 
 /** Why a window cannot be used, or null. */
@@ -103,118 +86,4 @@ function windowFault({ timesS }: MotionRecord, window: readonly [number, number]
     return `${asked} lies outside the clip, which runs from ${seconds(first)} to ${seconds(last)}.`;
   }
   return null;
-}
-
-function unmeasured(
-  record: MotionRecord,
-  verdict: Verdict,
-  sentence: string,
-  window: readonly [number, number] | null = null,
-): DwellJudgement {
-  const { total, lost } = countFrames(record, window);
-  return {
-    verdict,
-    sentence,
-    windowS: null,
-    frames: total - lost,
-    lostFrames: lost,
-    frequencyHz: null,
-    fit: null,
-    freeFit: null,
-    jointFit: null,
-    lag: null,
-    leftover: NOT_MEASURED,
-    leftoverEffect: null,
-    drift: NOT_MEASURED,
-    harmonics: [NOT_MEASURED, NOT_MEASURED, NOT_MEASURED, NOT_MEASURED],
-    waitS: null,
-    warnings: [],
-  };
-}
-
-/** Fits the window that was found and puts everything into words. */
-function describe(
-  record: MotionRecord,
-  options: JudgeOptions,
-  samples: Samples,
-  judged: WindowJudgement,
-): DwellJudgement {
-  const { model, finding } = judged;
-  const frequencyHz = model.frequencyHz;
-  const steady = finding.kind === 'steady';
-  const windowS =
-    options.window === undefined
-      ? wholePeriods(judged.windowS, frequencyHz, medianIntervalS(samples))
-      : judged.windowS;
-  const part = presentSamples(samples.timesS, samples.values, windowS);
-  const fitOptions = { baselineTerms: BASELINE_TERMS };
-  const fit = fitSineAtFrequency(part.timesS, part.values, frequencyHz, fitOptions);
-  const freeFit = fitSine(part.timesS, part.values, { ...fitOptions, startHz: frequencyHz });
-  const harmonics = harmonicRatios(part.timesS, part.values, frequencyHz);
-  const { total, lost } = countFrames(record, windowS);
-
-  const floor = fit === null ? null : noiseFloorOf(fit.amplitudeU, fit.effectiveDof, frequencyHz, fit.frames);
-  if (fit === null || floor === null || fit.amplitude <= floor.decision) {
-    const limit =
-      floor === null
-        ? ''
-        : `: a swing below ${millimetres(floor.detectable, floor.amplitudeU)} cannot be seen here`;
-    const why = `Nothing moves at ${hertz(frequencyHz)} above the noise${limit}${otherMotion(part)}.`;
-    return { ...unmeasured(record, 'failed', why, options.window ?? null), fit };
-  }
-  const drive = options.driveRecord;
-  const lag =
-    drive === undefined || drive.timesS.length !== record.timesS.length
-      ? null
-      : fitLag(...alignedWindow(record, drive, windowS), frequencyHz, fitOptions);
-  const warnings: MotionWarning[] = dwellWarnings({
-    record,
-    windowS,
-    driveHz: options.driveHz,
-    judged,
-    harmonics,
-    frames: { total, lost },
-    periods: spanS(part) * frequencyHz,
-  });
-  return {
-    verdict: verdictOf(finding),
-    sentence: sentenceOf(finding, windowS, frequencyHz, model.joint),
-    windowS,
-    frames: total - lost,
-    lostFrames: lost,
-    frequencyHz,
-    fit,
-    freeFit,
-    jointFit: model.joint,
-    lag,
-    leftover: judged.leftover,
-    leftoverEffect: judged.leftoverEffect,
-    drift: measured(judged.change.value, judged.change.u),
-    harmonics,
-    waitS: steady ? 0 : finding.kind === 'transient' ? finding.waitS : null,
-    warnings,
-  };
-}
-
-/** What moves instead, for the sentence. */
-function otherMotion(part: Samples): string {
-  const strongest = fitSine(part.timesS, part.values, { baselineTerms: BASELINE_TERMS });
-  if (strongest === null || strongest.amplitude < 5 * strongest.amplitudeU) return '';
-  return `; the strongest motion is at ${hertz(strongest.frequencyHz)}`;
-}
-
-/** Times, response and drive inside the window; frames outside are left out. */
-function alignedWindow(
-  response: MotionRecord,
-  drive: MotionRecord,
-  windowS: readonly [number, number],
-): [Float64Array, Float64Array, Float64Array] {
-  const keep = Array.from(response.timesS.keys()).filter(
-    (i) => response.timesS[i]! >= windowS[0] && response.timesS[i]! <= windowS[1],
-  );
-  return [
-    Float64Array.from(keep, (i) => response.timesS[i]!),
-    Float64Array.from(keep, (i) => response.displacementMm[i]!),
-    Float64Array.from(keep, (i) => drive.displacementMm[i]!),
-  ];
 }
