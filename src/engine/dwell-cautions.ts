@@ -2,6 +2,7 @@ import { unknownFrequencyWarning } from '../camera/aliasing.ts';
 import { judgeShake, stillRmsPx } from '../camera/camera-shake.ts';
 import { smearWarning } from '../camera/marker-smear.ts';
 import { checkFrequency } from '../camera/slow-motion.ts';
+import type { NoiseFloor } from '../motion/noise-floor.ts';
 import { fitSine } from '../sine/four-parameter.ts';
 import type { DwellSpec } from '../testfile/schema.ts';
 import { inWindow } from './dwell-at-frequency.ts';
@@ -44,4 +45,13 @@ export function smearWarnings(clip: EvaluatedClip, judged: JudgedDwell, scale: n
   const peakSpeedPxPerS = (2 * Math.PI * judged.frequencyHz * judged.amplitudeMm) / scale;
   const warning = smearWarning(peakSpeedPxPerS, clip.spec.exposure ?? null);
   return warning ? [warning.sentence] : [];
+}
+
+/** A motion smaller than what could be told from noise in this clip. */
+export function floorWarnings(judged: JudgedDwell, floor: NoiseFloor | null): string[] {
+  if (floor === null || judged.amplitudeMm >= floor.detectable) return [];
+  const text = (mm: number): string => `${mm.toPrecision(2)} mm`;
+  return [
+    `The motion of ${text(judged.amplitudeMm)} is below what could be told from noise in this clip (${text(floor.detectable)}, from a part at rest); film closer or longer, or drive harder where that is safe.`,
+  ];
 }

@@ -19,6 +19,7 @@ export function emptyDwell(configuration: Configuration, spec: DwellSpec): Dwell
     coverageFactor: null,
     independentU: null,
     amplitudePx: null,
+    noiseFloor: null,
     window: null,
     frames: 0,
     lostFrames: 0,

@@ -5,10 +5,16 @@ import { type Measured, measured, NOT_MEASURED } from '../numeric/measured.ts';
 import { lagDegrees } from '../sine/lag.ts';
 import type { Configuration, DwellSpec } from '../testfile/schema.ts';
 import { inWindow, type SeenSine, sineInWindow } from './dwell-at-frequency.ts';
-import { elsewhere, frequencyWarnings, shakeWarnings, smearWarnings } from './dwell-cautions.ts';
+import {
+  elsewhere,
+  floorWarnings,
+  frequencyWarnings,
+  shakeWarnings,
+  smearWarnings,
+} from './dwell-cautions.ts';
 import { emptyDwell, failedDwell } from './dwell-without-clip.ts';
 import type { EvaluatedClip } from './evaluate-clips.ts';
-import { filmingFacts, mmPerPx, rowFacts, stillAmplitudePx } from './filming-of-dwell.ts';
+import { filmingFacts, floorOf, mmPerPx, rowFacts, stillAmplitudePx } from './filming-of-dwell.ts';
 import { type JudgedDwell, judgeClipDwell } from './judge-clip-dwell.ts';
 import type { DwellResult } from './results.ts';
 
@@ -154,6 +160,8 @@ export function evaluateDwell(
           ]
         : [],
   });
+  const frames = inWindow(clip.response, judged.window).displacementMm.filter(Number.isFinite).length;
+  const floor = floorOf(clip, judged.window, judged.frequencyHz, frames);
   const refused = response.amplitude.value === null;
   const reason = refused
     ? (response.refusal?.sentence ?? 'This frequency cannot be measured at this frame rate.')
@@ -172,7 +180,8 @@ export function evaluateDwell(
     independentU: response.amplitudeBudget?.uOwn ?? null,
     amplitudePx: judged.amplitudeMm / scale,
     window: judged.window,
-    frames: inWindow(clip.response, judged.window).displacementMm.filter(Number.isFinite).length,
+    noiseFloor: floor?.detectable ?? null,
+    frames,
     lostFrames: judged.lostFrames,
     verdict: refused ? 'failed' : judged.verdict,
     sentence: reason ?? judged.sentence,
@@ -187,6 +196,7 @@ export function evaluateDwell(
       ...(refused ? [] : response.warnings.map((warning) => warning.sentence)),
       ...frequencyWarnings(clip, spec, judged),
       ...smearWarnings(clip, judged, scale),
+      ...floorWarnings(judged, floor),
       ...shakeWarnings(clip),
     ],
     error: reason,

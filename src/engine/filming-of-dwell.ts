@@ -2,9 +2,10 @@ import { compressionOf } from '../camera/codec-limit.ts';
 import type { FilmingFacts } from '../camera/correct-dwell.ts';
 import { type RowReadout, readoutDirection, readoutFraction } from '../camera/rolling-shutter.ts';
 import type { RowFacts } from '../camera/row-correction.ts';
+import { type NoiseFloor, noiseFloor } from '../motion/noise-floor.ts';
 import { localMmPerPx } from '../scale/perspective.ts';
 import type { PointPx } from '../scale/point-track.ts';
-import { sineInWindow } from './dwell-at-frequency.ts';
+import { inWindow, sineInWindow } from './dwell-at-frequency.ts';
 import type { EvaluatedClip } from './evaluate-clips.ts';
 
 /** Millimetres of true motion along the axis for one pixel of seen motion at a place. */
@@ -69,5 +70,28 @@ export function stillAmplitudePx(
   );
   return (
     sineInWindow({ timesS: still.timesS, displacementMm: along }, window, frequencyHz)?.amplitude ?? null
+  );
+}
+
+/**
+ * How small a motion along the axis could be seen in a dwell, from something at rest in the same clip; null where
+ * nothing at rest was followed.
+ */
+export function floorOf(
+  clip: EvaluatedClip,
+  window: readonly [number, number],
+  frequencyHz: number,
+  frames: number,
+): NoiseFloor | null {
+  const { still } = clip.motion;
+  if (!still) return null;
+  const scale = mmPerPx(clip, clip.motion.responseRestPx);
+  const along = still.x.map(
+    (x, i) => scale * (x * clip.axis.directionX + (still.y[i] ?? Number.NaN) * clip.axis.directionY),
+  );
+  return noiseFloor(
+    inWindow({ timesS: still.timesS, displacementMm: along }, window),
+    frequencyHz,
+    Math.max(1, frames),
   );
 }

@@ -66,6 +66,8 @@ export interface DwellResult {
   /** Uncertainty of the amplitude that is not shared with other dwells, mm: the weight in a resonance fit. */
   readonly independentU: number | null;
   readonly amplitudePx: number | null;
+  /** Smallest amplitude that could be told from noise in this clip, mm; null where nothing at rest is in view. */
+  readonly noiseFloor: number | null;
   readonly window: readonly [number, number] | null;
   readonly frames: number;
   readonly lostFrames: number;

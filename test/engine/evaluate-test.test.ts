@@ -253,6 +253,21 @@ describe('from tracks to a dwell (truth from the simulation)', () => {
     expect((plain.amplitude.u ?? 1) / (plain.amplitude.value ?? 1)).toBeLessThan(0.1);
   });
 
+  it('the noise floor of a clip is told, and a motion below it is said to be (detection limit as in ISO 11843, from memory)', () => {
+    const tiny = {
+      response: sine(0.002, 2.4, 70, 900, 400),
+      drive: sine(8, 2.4, 0, 300, 400),
+      ground: still(1700, 200),
+    };
+    const dwell = onlyDwell(testOf(2.4), syntheticTracks({ ...base, noisePx: 0.05, paths: tiny }));
+    const clear = onlyDwell(testOf(2.4), syntheticTracks({ ...base, noisePx: 0.05, paths }));
+    // u of an amplitude is sigma sqrt(2/N) = 0.05 sqrt(2/600) px = 0.0007 mm; the floor is some four times that
+    expect(clear.noiseFloor).toBeGreaterThan(0.0014);
+    expect(clear.noiseFloor).toBeLessThan(0.006);
+    expect([dwell.error, dwell.sentence, ...dwell.warnings].join(' ')).toMatch(/noise/);
+    expect(clear.warnings.join(' ')).not.toMatch(/below what could be told/);
+  });
+
   it('drive and response along lines 40 degrees apart are told', () => {
     const crossed = {
       response: sine(40, 2.4, 70, 900, 400),
