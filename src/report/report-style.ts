@@ -29,7 +29,7 @@ export const REPORT_STYLE: Html = html`
 :root{--ink:#1b2430;--soft:#4b5563;--rule:#b9b5aa;--rule2:#dcd8cd;--paper:#fff}
 *{box-sizing:border-box}
 html{background:#f1efe9}
-body{margin:0 auto;max-width:210mm;min-height:100vh;background:var(--paper);color:var(--ink);padding:14mm 16mm 18mm;
+body{margin:0 auto;max-width:236mm;min-height:100vh;background:var(--paper);color:var(--ink);padding:14mm 16mm 18mm;
  font:10pt/1.42 system-ui,"Segoe UI","Noto Sans","DejaVu Sans",sans-serif;font-variant-numeric:tabular-nums lining-nums}
 body{counter-reset:h2}h2::before{counter-increment:h2;content:counter(h2) "  "}h2{counter-reset:h3}
 h1{font-size:18pt;line-height:1.2;margin:0 0 .2em;font-weight:650}
@@ -44,7 +44,7 @@ caption{text-align:left;caption-side:top;padding-bottom:.3em;font-size:9pt}
 th,td{padding:.22em .6em;border-bottom:1px solid var(--rule2);vertical-align:top;text-align:left}
 th:first-child,td:first-child{padding-left:0}th:last-child,td:last-child{padding-right:0}
 thead th{border-bottom:1px solid var(--ink);font-weight:600;vertical-align:bottom}
-tbody th{font-weight:500}.t{overflow-wrap:anywhere;min-width:3.2em}.n{text-align:right;white-space:nowrap}.w{white-space:nowrap}
+tbody th{font-weight:500}.t{overflow-wrap:anywhere;min-width:6em}.n{text-align:right;white-space:nowrap}.w{white-space:nowrap}
 .facts th{font-weight:400;min-width:0;color:var(--soft);white-space:nowrap;padding-right:1.4em}.facts td,.facts th{border-bottom-color:var(--rule2)}
 .small{font-size:8pt}.small th,.small td{padding:.15em .35em}
 .struck{text-decoration:line-through;text-decoration-thickness:.6px}
@@ -61,7 +61,7 @@ sub,sup{font-size:75%;line-height:0}.formula{break-after:avoid;margin:.2em 0 .7e
 .seen{border:1px solid var(--rule)}
 @media screen and (max-width:700px){body{padding:16px}.titles,.strips{display:block}.pair{display:block}.pair>figure{width:auto;max-width:none}table{display:block;overflow-x:auto}}
 @media print{html{background:none}body{max-width:none;padding:0;min-height:0;font-size:9pt;print-color-adjust:exact;-webkit-print-color-adjust:exact}
- table{font-size:8.2pt}.small,.hash{font-size:7pt}th,td{padding:.18em .42em}caption,figcaption,.soft{font-size:8pt}
+ table{font-size:8.2pt}.t{min-width:3.2em}.small,.hash{font-size:7pt}th,td{padding:.18em .42em}caption,figcaption,.soft{font-size:8pt}
  h2,h3{break-after:avoid}figure,tr,.whole,.keep,.notice,.pair,.sign,li{break-inside:avoid}thead{display:table-header-group}caption{break-after:avoid}
  p{orphans:3;widows:3}h2.page{break-before:page;margin-top:0}}
 `;

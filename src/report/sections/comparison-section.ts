@@ -25,8 +25,8 @@ function verdict({ significant }: ComparedPair): string {
 }
 
 function pairRows(parameter: ComparedParameter, nameOf: (id: string) => string): HtmlValue[][] {
-  return parameter.pairs.map((pair, k) => [
-    k === 0 ? parameter.name : '',
+  return parameter.pairs.map((pair) => [
+    parameter.name,
     `${nameOf(pair.to)} − ${nameOf(pair.from)}`,
     `${withUncertainty(pair.difference, pair.expandedDifference)}${parameter.unit && pair.difference !== null ? ` ${parameter.unit}` : ''}`,
     withUncertainty(pair.ratio, pair.uRatio),
