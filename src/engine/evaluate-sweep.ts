@@ -59,10 +59,15 @@ export function evaluateSweep(
       clip: sweep.clip,
       ...(listed === undefined ? {} : { driveHz: listed }),
     };
+    // the moment of the change is known to a fraction of a period only
+    const own =
+      k === 0
+        ? segment
+        : { ...segment, fromS: Math.min(segment.fromS + 1 / segment.frequencyHz, segment.toS) };
     return evaluateDwell(configuration, spec, {
       ...clip,
-      response: segmentRecord(clip.response, segment),
-      drive: clip.drive ? segmentRecord(clip.drive, segment) : null,
+      response: segmentRecord(clip.response, own),
+      drive: clip.drive ? segmentRecord(clip.drive, own) : null,
     });
   });
 }
