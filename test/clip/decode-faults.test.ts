@@ -1,4 +1,5 @@
 import { readFileSync, writeFileSync } from 'node:fs';
+import { join } from 'node:path';
 import { beforeAll, describe, expect, test } from 'vitest';
 import type { ClipInfo } from '../../src/clip/clip-info.ts';
 import { decodeWholeFrames } from '../../src/clip/decode-regions.ts';
@@ -78,10 +79,12 @@ describe('an ffmpeg that misbehaves', () => {
   const FRAME_BYTES = 96 * 64;
   const fake = (how: Parameters<typeof fakeFfmpeg>[0]): DecodeOptions => {
     cutRealFfmpegAfter(5.5 * FRAME_BYTES);
-    return { ffmpeg: { ...ffmpeg, path: fakeFfmpeg(how) }, stallS: 2 };
+    process.env['RECORDING'] = join(folder, 'victim.nut');
+    return { ffmpeg: { ...ffmpeg, path: fakeFfmpeg(how) } };
   };
   beforeAll(async () => {
     clip = await probe(makeClip(folder, { name: 'victim.mp4', frames: 30, encoder: H264 }));
+    expect((await seeNumbers(clip, fake('records'))).numbers).toEqual(upTo(30));
   });
 
   test('frames cut short: those that are whole count, the others are lost', async () => {
@@ -96,12 +99,16 @@ describe('an ffmpeg that misbehaves', () => {
       'killed-mid-way',
       /^victim\.mp4: ffmpeg was killed by SIGKILL after 5 frames; measure the clip again\.$/,
     ],
-    ['stalls-mid-way', /^victim\.mp4: ffmpeg fell silent after 5 frames and was stopped/],
     ['exits-1', /^victim\.mp4: ffmpeg ended with status 1 \("clip\.mp4: nothing good in here"\)/],
     ['floods-stderr', /^victim\.mp4: no frame of the clip could be decoded \("again and again"\)/],
     ['talks-nonsense', /not a NUT stream/],
   ] as const)('%s', async (how, says) => {
     await expect(seeNumbers(clip, fake(how))).rejects.toThrow(says);
+  });
+
+  test('stalls-mid-way', async () => {
+    const decoding = seeNumbers(clip, { ...fake('stalls-mid-way'), stallS: 1 });
+    await expect(decoding).rejects.toThrow(/^victim\.mp4: ffmpeg fell silent after 5 frames and was stopped/);
   });
 
   test('one that is gone', async () => {

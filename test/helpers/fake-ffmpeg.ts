@@ -10,6 +10,7 @@ export type Misbehaviour =
   | 'floods-stderr'
   | 'short-frames'
   | 'killed-mid-way'
+  | 'records'
   | 'stalls-mid-way'
   | 'talks-nonsense'
   | 'tells-old-version';

@@ -1,4 +1,4 @@
 #!/bin/sh
-# The real one, which falls silent after some frames.
-"$REAL_FFMPEG" "$@" | head -c "$CUT_AFTER_BYTES"
+# Plays what the real one once said, and falls silent after some frames. Starts at once, however busy the computer is.
+head -c "$CUT_AFTER_BYTES" "$RECORDING"
 exec tail -f /dev/null
