@@ -62,7 +62,7 @@ function program(setStatus: (status: number) => void): Command {
     .command('report')
     .description('measure a test and write its report')
     .argument('<test>', 'test file', path)
-    .requiredOption('--out <file>', 'the report, one HTML file', path)
+    .requiredOption('--out <file>', 'the report: FILE.html, or FILE.pdf where a Chromium is there', path)
     .action(async (test: string, options: { out: string }) => {
       setStatus(await report(test, options));
     });

@@ -1,4 +1,5 @@
 import type { TestFile } from '../testfile/schema.ts';
+import { PROGRAM } from './program.ts';
 import type { DwellResult, Results } from './results.ts';
 
 function kept(
@@ -18,6 +19,7 @@ function kept(
     gainU: result.gain.u,
     commonRelativeU: u === null || own === null ? 0 : Math.sqrt(Math.max(0, u * u - own * own)) / value,
     verdict: result.verdict,
+    program: PROGRAM,
     ...(sha256 === null ? {} : { clipSha256: sha256 }),
   };
 }

@@ -94,6 +94,8 @@ const measuredBefore = z.looseObject({
   gainU: z.number().min(0).nullable().optional(),
   commonRelativeU: z.number().min(0).optional(),
   verdict: z.string().optional(),
+  /** Name and version of the program that measured. */
+  program: z.string().optional(),
   clipSha256: z.string().optional(),
 });
 

@@ -41,6 +41,7 @@ const ADAPTER: Record<string, string> = {
   '@stdlib/stats-base-dists-chisquare-cdf': 'src/numeric/quantiles.ts',
   'opencv-wasm': 'src/track/opencv.ts',
   'jsonc-parser': 'src/testfile/parse-json.ts',
+  '@napi-rs/canvas': 'src/report/draw-chart.ts',
   'cli-progress': 'src/cli/progress-bar.ts',
 };
 
