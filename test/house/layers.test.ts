@@ -75,7 +75,7 @@ describe('imports in src/ point one way', () => {
 
 it('each foreign library is touched by its one adapter only', () => {
   const wrong = sources.flatMap((path) =>
-    importsOf(path)
+    importsOf(path, true)
       .filter((name) => name in ADAPTER && ADAPTER[name] !== path)
       .map((name) => `${path} imports ${name}`),
   );

@@ -19,9 +19,13 @@ export function textOf(path: string): string {
   return readFileSync(join(top, path), 'utf8');
 }
 
-/** What a source imports: module names as written, relative ones resolved to paths from the top. */
-export function importsOf(path: string): string[] {
-  const found = textOf(path).matchAll(
+/**
+ * What a source imports: module names as written, relative ones resolved to paths from the top.
+ * @param valuesOnly leave out what is imported for its types alone
+ */
+export function importsOf(path: string, valuesOnly = false): string[] {
+  const text = valuesOnly ? textOf(path).replace(/(?:^|\n)(?:import|export) type [^;]*;/g, '') : textOf(path);
+  const found = text.matchAll(
     /(?:^|\n)\s*(?:import|export)\s[^;]*?from\s+'([^']+)'|import\('([^']+)'\)|(?:^|\n)import\s+'([^']+)'/g,
   );
   return [...found].map((match) => {
