@@ -127,6 +127,8 @@ export class LoopbackServer {
     }
     const { bench, onFault = () => undefined } = this.#parts;
     const outcome = await callOperation(bench.handlers, name, input, onFault);
+    if (!outcome.ok && outcome.failure.name === 'CancelledError')
+      return answer(response, 204, 'text/plain', '');
     if (!outcome.ok) {
       const status = { refused: 400, failed: 422, fault: 500 }[outcome.kind];
       return answerJson(response, status, outcome.failure);

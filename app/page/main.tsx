@@ -2,7 +2,7 @@ import { effect } from '@preact/signals';
 import { render } from 'preact';
 import { App } from './chrome/App.tsx';
 import { applyLooks } from './chrome/looks.ts';
-import { preferences, startMirror } from './state/bench.ts';
+import { bench, preferences, startMirror } from './state/bench.ts';
 import './styles/tokens.css';
 import './styles/base.css';
 import './styles/frame.css';
@@ -11,6 +11,10 @@ import './styles/measure.css';
 import './styles/resonance.css';
 
 effect(() => applyLooks(preferences.value));
+effect(() => {
+  const { test, save } = bench.value ?? {};
+  document.title = test ? `${save?.status === 'saved' ? '' : '• '}${test.title} – Dwellbook` : 'Dwellbook';
+});
 startMirror();
 const place = document.getElementById('bench');
 if (place) render(<App />, place);

@@ -7,6 +7,7 @@ import type { Intake } from './answers.ts';
 import type { BenchEvent, BenchState, HostFacts, JobState, Notice } from './bench-state.ts';
 import { ClipShelf } from './clip-shelf.ts';
 import type { Engine } from './engine.ts';
+import { packFrame } from './frame-bytes.ts';
 import { FrameStore } from './frame-store.ts';
 import { addClipsEdit, isTestName, sortPaths } from './intake.ts';
 import { listFolder } from './list-folder.ts';
@@ -132,10 +133,12 @@ export class Bench {
     findClips: ({ folder }) => this.#inTurn(() => this.#findClips(folder)),
 
     clip: ({ clip }) => this.#clips.get(clip, this.#clipPath(clip)),
-    frame: async ({ clip, frame, widthPx }) => {
+    frame: async ({ clip, frame, widthPx, near }) => {
       const path = this.#clipPath(clip);
       const { frameCount } = await this.#clips.get(clip, path);
-      return this.#frames.get(path, frameCount, frame, widthPx);
+      const source = { path, frameCount, widthPx };
+      const picture = await (near ? this.#frames.near(source, frame) : this.#frames.get(source, frame));
+      return packFrame(picture.frame, picture.jpeg);
     },
     judgeSpot: ({ clip, frame, at, sizePx }) =>
       this.#parts.quickEngine.call('judgeSpot', {

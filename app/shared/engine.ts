@@ -29,7 +29,7 @@ export type EvaluationAnswer =
 export interface EngineCalls {
   probe: { args: { path: string }; answer: Omit<ClipView, 'id'>; progress: never };
   frames: {
-    args: { path: string; first: number; count: number; widthPx: number };
+    args: { path: string; first: number; count: number; widthPx: number; onlyKeyFrames: boolean };
     answer: number;
     progress: FramePicture;
   };

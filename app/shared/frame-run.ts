@@ -17,6 +17,8 @@ export interface FrameRunOptions {
   readonly count: number;
   /** Frames are made no wider than this, and never larger than they are. */
   readonly widthPx: number;
+  /** Only frames that decode without others: a quick look over the clip. */
+  readonly onlyKeyFrames: boolean;
   readonly signal: AbortSignal;
 }
 
@@ -32,7 +34,7 @@ export async function frameRun(
   onPicture: (picture: FramePicture) => void,
 ): Promise<number> {
   const range = { first: options.first, end: Math.min(clip.frameCount, options.first + options.count) };
-  const matcher = new FrameMatcher(clip, range.first, false);
+  const matcher = new FrameMatcher(clip, range.first, options.onlyKeyFrames);
   let delivered = 0;
   const reader = new NutReader(({ pts, timeBase, payload }) => {
     const frame = matcher.match(clipTicks(pts, timeBase, clip));
@@ -43,7 +45,7 @@ export async function frameRun(
   const pass = decodingPass(clip, ffmpeg, range, {
     filters: displayFilters(clip, options.widthPx),
     encoder: ['-c:v', 'mjpeg', '-q:v', JPEG_QUALITY, '-frames:v', String(range.end - range.first)],
-    onlyKeyFrames: false,
+    onlyKeyFrames: options.onlyKeyFrames,
     seek: range.first > 0,
     strict: false,
   });

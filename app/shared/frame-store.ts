@@ -1,163 +1,149 @@
 import { CancelledError, InputError } from '../../src/errors.ts';
 import type { Engine, FramePicture } from './engine.ts';
+import { PictureShelf, type Pictures } from './picture-shelf.ts';
+import { ScrubReader } from './scrub-reader.ts';
 
-const MOST_BYTES = 384 * 1024 * 1024;
-const SMALL_PX = 640; // pictures no wider are kept for whole stretches, for scrubbing
-const SMALL_RUN = 180;
-const SHARP_RUN = 20;
-const SHARP_BACK = 6; // stepping back costs a seek, so a few frames before are read along
+const RUN_ON = 20; // frames read at a time when stepping on
+const RUN_BACK = 8; // stepping back costs a seek, so a few frames before are read along
+
+/** A clip as far as its frames are asked for. */
+export interface FrameSource {
+  readonly path: string;
+  readonly frameCount: number;
+  /** Pictures are made no wider than this. */
+  readonly widthPx: number;
+}
 
 interface Run {
-  readonly first: number;
+  readonly key: string;
   readonly end: number;
   next: number;
   readonly stop: AbortController;
-  readonly done: Promise<void>;
 }
 
-interface Shelf {
-  readonly pictures: Map<number, Uint8Array>;
-  readonly waiting: Map<number, { resolve: (jpeg: Uint8Array) => void; reject: (error: Error) => void }[]>;
-  run: Run | null;
-  last: number;
+interface Waiting {
+  readonly frame: number;
+  readonly resolve: (picture: FramePicture) => void;
+  readonly reject: (error: Error) => void;
 }
 
 /**
- * Displayed frames of clips, read in runs and kept for a while: the next step and the next turn of a scrub find
- * theirs here. A wish outside the run being read ends that run: the latest wish is what matters.
+ * Displayed frames of clips as JPEG, read in runs and kept for a while: the next step finds its frame here. A wish
+ * outside the run being read ends that run: the latest wish is what matters.
  */
 export class FrameStore {
   readonly #engine: Engine;
-  readonly #shelves = new Map<string, Shelf>();
-  #bytes = 0;
+  readonly #shelf = new PictureShelf();
+  readonly #last = new Map<string, number>();
+  #run: Run | null = null;
+  #waiting: Waiting[] = [];
+  #scrub: { readonly key: string; readonly reader: ScrubReader } | null = null;
 
   constructor(engine: Engine) {
     this.#engine = engine;
   }
 
   /**
-   * One frame as JPEG.
+   * Exactly the frame asked for.
    * @throws CancelledError when a later wish took its place; InputError when the clip cannot give it
    */
-  async get(path: string, frameCount: number, frame: number, widthPx: number): Promise<Uint8Array> {
-    const shelf = this.#shelf(`${widthPx} ${path}`);
-    const backwards = frame < shelf.last;
-    shelf.last = frame;
-    const kept = shelf.pictures.get(frame);
-    if (kept) {
-      this.#readAhead(shelf, path, frameCount, frame, widthPx, backwards);
-      return kept;
+  async get(source: FrameSource, frame: number): Promise<FramePicture> {
+    if (frame >= source.frameCount)
+      throw new InputError(`The clip has ${source.frameCount} frames: there is no frame ${frame}.`);
+    const key = keyOf(source);
+    const pictures = this.#shelf.of(key);
+    const backwards = frame < (this.#last.get(key) ?? 0);
+    this.#last.set(key, frame);
+    const jpeg = pictures.byFrame.get(frame);
+    if (jpeg) {
+      if (!this.#run) this.#readAhead(source, pictures, frame, backwards);
+      return { frame, jpeg };
     }
-    if (frame >= frameCount)
-      throw new InputError(`The clip has ${frameCount} frames: there is no frame ${frame}.`);
-    const picture = new Promise<Uint8Array>((resolve, reject) => {
-      const waiting = shelf.waiting.get(frame) ?? [];
-      waiting.push({ resolve, reject });
-      shelf.waiting.set(frame, waiting);
-    });
-    const { run } = shelf;
-    if (!run || frame < run.next || frame >= run.end)
-      this.#start(shelf, path, runFor(frame, frameCount, widthPx, backwards), widthPx);
+    const picture = new Promise<FramePicture>((resolve, reject) =>
+      this.#waiting.push({ frame, resolve, reject }),
+    );
+    const run = this.#run;
+    if (!run || run.key !== key || frame < run.next || frame >= run.end) {
+      const first = backwards ? Math.max(0, frame - RUN_BACK) : frame;
+      this.#start(source, pictures, first, backwards ? frame + 1 : frame + RUN_ON, frame);
+    }
     return picture;
+  }
+
+  /** The picture nearest to a frame that can be had at once, for a hand on its way through the clip. */
+  near(source: FrameSource, frame: number): Promise<FramePicture> {
+    const key = keyOf(source);
+    if (this.#scrub?.key !== key) {
+      this.#scrub?.reader.stop();
+      this.#scrub = { key, reader: new ScrubReader(this.#engine, this.#shelf, this.#shelf.of(key), source) };
+    }
+    return this.#scrub.reader.near(Math.min(frame, source.frameCount - 1));
   }
 
   /** Forgets everything, and stops reading. */
   clear(): void {
-    for (const shelf of this.#shelves.values()) this.#stop(shelf);
-    this.#shelves.clear();
-    this.#bytes = 0;
+    this.#stop(null);
+    this.#scrub?.reader.stop();
+    this.#scrub = null;
+    this.#shelf.clear();
+    this.#last.clear();
   }
 
-  #shelf(key: string): Shelf {
-    const found = this.#shelves.get(key);
-    if (found) {
-      this.#shelves.delete(key);
-      this.#shelves.set(key, found); // most recently used last
-      return found;
-    }
-    const made: Shelf = { pictures: new Map(), waiting: new Map(), run: null, last: 0 };
-    this.#shelves.set(key, made);
-    return made;
+  /** Begins the next run while there are still some frames of this one to step through. */
+  #readAhead(source: FrameSource, pictures: Pictures, frame: number, backwards: boolean): void {
+    const kept = (at: number): boolean => pictures.byFrame.has(at);
+    let next = frame;
+    while (kept(next)) next += backwards ? -1 : 1;
+    const left = Math.abs(next - frame);
+    if (next < 0 || next >= source.frameCount || left > (backwards ? RUN_BACK : RUN_ON) / 2) return;
+    if (backwards) this.#start(source, pictures, Math.max(0, next - RUN_BACK), next + 1, null);
+    else this.#start(source, pictures, next, next + RUN_ON, null);
   }
 
-  /** Starts the next run while the hand is still on the way through this one. */
-  #readAhead(
-    shelf: Shelf,
-    path: string,
-    frameCount: number,
-    frame: number,
-    widthPx: number,
-    backwards: boolean,
-  ): void {
-    if (shelf.run) return;
-    const [ahead, step] = widthPx <= SMALL_PX ? [SMALL_RUN / 2, SMALL_RUN] : [SHARP_RUN / 3, SHARP_RUN / 2];
-    const probe = Math.round(backwards ? frame - ahead : frame + ahead);
-    if (probe < 0 || probe >= frameCount || shelf.pictures.has(probe)) return;
-    let first = probe;
-    if (backwards) first = Math.max(0, probe - step + 1);
-    else while (first > frame && !shelf.pictures.has(first - 1)) first--;
-    this.#start(shelf, path, [first, Math.min(frameCount, first + step)], widthPx);
-  }
-
-  #start(shelf: Shelf, path: string, [first, end]: readonly [number, number], widthPx: number): void {
-    this.#stop(shelf);
-    const stop = new AbortController();
-    const onProgress = ({ frame, jpeg }: FramePicture): void => {
-      if (shelf.run?.stop !== stop) return;
-      shelf.run.next = frame + 1;
-      this.#keep(shelf, frame, jpeg);
+  #start(source: FrameSource, pictures: Pictures, first: number, end: number, wish: number | null): void {
+    this.#stop(wish);
+    const run: Run = {
+      key: keyOf(source),
+      end: Math.min(source.frameCount, end),
+      next: first,
+      stop: new AbortController(),
     };
-    const args = { path, first, count: end - first, widthPx };
-    const done = this.#engine.call('frames', args, { signal: stop.signal, onProgress }).then(
-      () =>
-        this.#ended(shelf, stop, new InputError(`A frame from ${first} to ${end - 1} could not be decoded.`)),
-      (error: unknown) => this.#ended(shelf, stop, error instanceof Error ? error : new Error(String(error))),
+    this.#run = run;
+    const onProgress = (picture: FramePicture): void => {
+      this.#shelf.keep(pictures, picture.frame, picture.jpeg);
+      run.next = picture.frame + 1;
+      if (this.#run === run) this.#answer(picture);
+    };
+    const { path, widthPx } = source;
+    const args = { path, first, count: run.end - first, widthPx, onlyKeyFrames: false };
+    this.#engine.call('frames', args, { signal: run.stop.signal, onProgress }).then(
+      () => this.#ended(run, new InputError(`Frame ${wish ?? first} of the clip could not be decoded.`)),
+      (error: unknown) => this.#ended(run, error instanceof Error ? error : new Error(String(error))),
     );
-    shelf.run = { first, end, next: first, stop, done };
   }
 
-  #stop(shelf: Shelf): void {
-    const { run } = shelf;
-    if (!run) return;
-    shelf.run = null;
-    run.stop.abort();
-    for (const [frame, waiting] of [...shelf.waiting]) {
-      if (frame < run.next || frame >= run.end) continue;
-      shelf.waiting.delete(frame);
-      for (const each of waiting) each.reject(new CancelledError());
-    }
+  /** Ends the run under way; who waits for another frame than the one wished for now is told so. */
+  #stop(wish: number | null): void {
+    this.#run?.stop.abort();
+    this.#run = null;
+    const overtaken = this.#waiting.filter((each) => each.frame !== wish);
+    this.#waiting = this.#waiting.filter((each) => each.frame === wish);
+    for (const each of overtaken) each.reject(new CancelledError());
   }
 
-  #ended(shelf: Shelf, stop: AbortController, reason: Error): void {
-    if (shelf.run?.stop !== stop) return;
-    shelf.run = null;
-    const waiting = [...shelf.waiting.values()].flat();
-    shelf.waiting.clear();
-    for (const each of waiting) each.reject(reason);
+  #answer(picture: FramePicture): void {
+    const served = this.#waiting.filter((each) => each.frame === picture.frame);
+    this.#waiting = this.#waiting.filter((each) => each.frame !== picture.frame);
+    for (const each of served) each.resolve(picture);
   }
 
-  #keep(shelf: Shelf, frame: number, jpeg: Uint8Array): void {
-    if (!shelf.pictures.has(frame)) this.#bytes += jpeg.length;
-    shelf.pictures.set(frame, jpeg);
-    for (const each of shelf.waiting.get(frame) ?? []) each.resolve(jpeg);
-    shelf.waiting.delete(frame);
-    for (const [key, oldest] of this.#shelves) {
-      if (this.#bytes <= MOST_BYTES) return;
-      for (const [at, bytes] of oldest.pictures) {
-        if (this.#bytes <= MOST_BYTES) return;
-        oldest.pictures.delete(at);
-        this.#bytes -= bytes.length;
-      }
-      if (oldest !== shelf) this.#shelves.delete(key);
-    }
+  #ended(run: Run, reason: Error): void {
+    if (this.#run !== run) return;
+    this.#run = null;
+    for (const each of this.#waiting.splice(0)) each.reject(reason);
   }
 }
 
-function runFor(frame: number, frameCount: number, widthPx: number, backwards: boolean): [number, number] {
-  if (widthPx <= SMALL_PX) {
-    const first = frame - (frame % (SMALL_RUN / 3));
-    return [first, Math.min(frameCount, first + SMALL_RUN)];
-  }
-  const first = backwards ? Math.max(0, frame - SHARP_BACK) : frame;
-  return [first, Math.min(frameCount, backwards ? frame + 1 : frame + SHARP_RUN)];
+function keyOf({ path, widthPx }: FrameSource): string {
+  return `${widthPx} ${path}`;
 }

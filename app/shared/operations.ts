@@ -49,9 +49,14 @@ export const operations = {
   findClips: operation<{ found: number; left: number }>()(z.strictObject({ folder: path })),
 
   clip: operation<ClipView>()(z.strictObject({ clip: id })),
-  /** One displayed frame as JPEG; no wider than asked. */
+  /** One displayed frame, no wider than asked, packed by `frame-bytes.ts`; where `near`, the nearest one at hand. */
   frame: operation<Uint8Array>()(
-    z.strictObject({ clip: id, frame: z.int().min(0), widthPx: z.int().min(16).max(16384) }),
+    z.strictObject({
+      clip: id,
+      frame: z.int().min(0),
+      widthPx: z.int().min(16).max(16384),
+      near: z.boolean(),
+    }),
   ),
   judgeSpot: operation<SpotJudgement>()(
     z.strictObject({

@@ -24,6 +24,7 @@ export class LoopbackClient implements BenchClient {
     }).catch(() => {
       throw new CallError(GONE);
     });
+    if (response.status === 204) throw new CallError('Stopped, or overtaken by a later call.', true);
     if (!response.ok) throw await failureOf(response);
     const isBytes = response.headers.get('Content-Type') === 'application/octet-stream';
     const output: unknown = isBytes ? new Uint8Array(await response.arrayBuffer()) : await response.json();

@@ -99,6 +99,7 @@ function configurationOf(plot: Plot, now: () => Plot): ChartConfiguration<'scatt
   const font = { family: getComputedStyle(document.body).fontFamily, size: rem * 0.85 };
   const axis = (title: string) => ({
     type: 'linear' as const,
+    bounds: 'data' as const,
     grid: { color: token('rule2') },
     border: { color: token('rule') },
     ticks: { color: token('faint'), font, maxTicksLimit: plot.small ? 6 : 9 },

@@ -104,11 +104,13 @@ function sceneNow(): Scene | null {
     points: points.value,
     selected: selectedPoint.value,
     track: track.value,
-    frame: frame.value,
+    // the track is drawn where the picture stands, which may lag behind a moving hand
+    frame: loaded.value?.frame ?? frame.value,
     patchPx,
     words,
     aim: armedTool.value ? hand.value : null,
     scaleText: pxPerMm.value === null ? null : scaleText.value,
+    stageWidth: stageSize.value.width,
     rem: (13 * textPercent) / 100,
   };
 }

@@ -8,7 +8,7 @@ const WIDTH = 180;
 const HEIGHT = 120;
 const ZOOM = 6;
 
-/** The surroundings of the selected point, or of the hand while something is to be placed, six times enlarged. */
+/** The surroundings of the selected point (the response marker where none is), or of the hand while something is to be placed, six times enlarged. */
 export function Loupe() {
   const canvas = useRef<HTMLCanvasElement>(null);
   useSignalEffect(() => {
@@ -63,5 +63,8 @@ export function Loupe() {
 
 function looksAt(): readonly [number, number] | null {
   if (armedTool.value && hand.value) return hand.value;
-  return points.value.find((each) => each.key === selectedPoint.value)?.at ?? null;
+  const shown =
+    points.value.find((each) => each.key === selectedPoint.value) ??
+    points.value.find((each) => each.marker?.role === 'response');
+  return shown?.at ?? null;
 }

@@ -20,6 +20,7 @@ export interface Scene {
   /** Where the hand is while something is to be placed. */
   readonly aim: PointPx | null;
   readonly scaleText: string | null;
+  readonly stageWidth: number;
   /** Size of a rem, px. */
   readonly rem: number;
 }
@@ -146,7 +147,14 @@ function drawMarker(context: CanvasRenderingContext2D, scene: Scene, point: Plac
   edged(context, dot, lost ? LOST : colour, 1.2);
   const words = scene.words.get(point.key);
   const label = lost ? `${point.name} · lost in this frame` : words ? `${point.name} · ${words}` : point.name;
-  text(context, label, x - half, y - half - 0.5 * scene.rem, lost ? '#ffb38a' : '#fff');
+  const right = scene.stageWidth - context.measureText(label).width - 4;
+  text(
+    context,
+    label,
+    Math.max(4, Math.min(x - half, right)),
+    y - half - 0.5 * scene.rem,
+    lost ? '#ffb38a' : '#fff',
+  );
 }
 
 /** The four corners of a square. */

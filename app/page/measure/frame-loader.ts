@@ -1,13 +1,15 @@
+import { unpackFrame } from '../../shared/frame-bytes.ts';
 import { client } from '../state/bench.ts';
 
 const MOST_KEPT = 60;
-const MOST_ASKED = 2;
+const MOST_ASKED = 2; // one that may be overtaken, and the latest
 const SMALL_PX = 640;
 const SHARPEN_MS = 130; // after the last move of a scrub
 
 /** A decoded frame to draw. */
 export interface LoadedFrame {
   readonly clip: string;
+  /** The frame that the picture shows; while the hand moves it may lag behind the one wished for. */
   readonly frame: number;
   readonly bitmap: ImageBitmap;
   readonly sharp: boolean;
@@ -17,21 +19,25 @@ interface Wish {
   readonly clip: string;
   readonly frame: number;
   readonly widthPx: number;
+  /** The nearest picture at hand will do. */
+  readonly near: boolean;
 }
 
 /**
- * Fetches frames, the latest wish first: while the hand scrubs, small ones; a sharp one when it rests. At most two
- * are asked for at a time, and wishes overtaken meanwhile are never asked.
+ * Fetches frames, the latest wish first: while the hand scrubs, small ones near the place; exactly the sharp one when
+ * it rests. At most two are asked for at a time, and wishes overtaken meanwhile are never asked.
  */
 export class FrameLoader {
   readonly #onFrame: (frame: LoadedFrame) => void;
   readonly #kept = new Map<string, ImageBitmap>();
-  readonly #asked = new Set<string>();
+  #asking = 0;
+  #turn = 0;
+  #shownTurn = 0;
   #wanted: Wish | null = null;
   #sharpen: ReturnType<typeof setTimeout> | null = null;
-  /** Time from wish to picture of each frame shown, ms; for the bench's own measurements. */
-  readonly latenciesMs: number[] = [];
   #wishedAt = 0;
+  /** Time from wish to picture of the frames shown last, ms: for measuring the page's speed. */
+  readonly latenciesMs: number[] = [];
 
   constructor(onFrame: (frame: LoadedFrame) => void) {
     this.#onFrame = onFrame;
@@ -42,72 +48,55 @@ export class FrameLoader {
     this.#wishedAt = performance.now();
     if (this.#sharpen) clearTimeout(this.#sharpen);
     this.#sharpen = null;
-    const sharp = { clip, frame, widthPx: fullWidthPx };
-    if (this.#give(sharp, true)) return;
-    if (fullWidthPx <= SMALL_PX || !moving) {
-      this.#want(sharp);
-      return;
+    const sharp: Wish = { clip, frame, widthPx: fullWidthPx, near: false };
+    const bitmap = this.#kept.get(keyOf(sharp));
+    if (bitmap) {
+      this.#wanted = null;
+      this.#shownTurn = ++this.#turn;
+      this.#shown({ clip, frame, bitmap, sharp: true });
+    } else if (!moving) this.#want(sharp);
+    else {
+      this.#want({ ...sharp, widthPx: Math.min(SMALL_PX, fullWidthPx), near: true });
+      this.#sharpen = setTimeout(() => this.#want(sharp), SHARPEN_MS);
     }
-    const small = { clip, frame, widthPx: SMALL_PX };
-    if (!this.#give(small, false)) this.#want(small);
-    this.#sharpen = setTimeout(() => this.#want(sharp), SHARPEN_MS);
-  }
-
-  clear(): void {
-    if (this.#sharpen) clearTimeout(this.#sharpen);
-    this.#wanted = null;
-    for (const bitmap of this.#kept.values()) bitmap.close();
-    this.#kept.clear();
-  }
-
-  #give(wish: Wish, sharp: boolean): boolean {
-    const key = keyOf(wish);
-    const bitmap = this.#kept.get(key);
-    if (!bitmap) return false;
-    this.#kept.delete(key);
-    this.#kept.set(key, bitmap);
-    this.#shown({ clip: wish.clip, frame: wish.frame, bitmap, sharp });
-    return true;
   }
 
   #shown(frame: LoadedFrame): void {
     this.latenciesMs.push(performance.now() - this.#wishedAt);
-    if (this.latenciesMs.length > 500) this.latenciesMs.shift();
+    if (this.latenciesMs.length > 1000) this.latenciesMs.shift();
     this.#onFrame(frame);
   }
 
   #want(wish: Wish): void {
     this.#wanted = wish;
-    if (this.#asked.size < MOST_ASKED) void this.#ask(wish);
+    if (this.#asking < MOST_ASKED) void this.#askOn();
   }
 
-  async #ask(wish: Wish): Promise<void> {
-    const key = keyOf(wish);
-    if (this.#asked.has(key)) return;
-    this.#asked.add(key);
-    try {
-      const jpeg = await client.call('frame', wish);
-      const bitmap = await createImageBitmap(new Blob([jpeg as BlobPart], { type: 'image/jpeg' }));
-      this.#keep(key, bitmap);
-      const wanted = this.#wanted;
-      // A frame on the way to the one wanted is shown too: the picture moves with the hand.
-      if (wanted?.clip === wish.clip)
-        this.#shown({ clip: wish.clip, frame: wish.frame, bitmap, sharp: wish.widthPx > SMALL_PX });
-      if (wanted === wish) this.#wanted = null;
-    } catch {
-      if (this.#wanted === wish) this.#wanted = null; // the clip's own message tells what is wrong with it
-    } finally {
-      this.#asked.delete(key);
-      if (this.#wanted && this.#wanted !== wish) void this.#ask(this.#wanted);
+  async #askOn(): Promise<void> {
+    this.#asking++;
+    while (this.#wanted) {
+      const wish: Wish = this.#wanted;
+      this.#wanted = null;
+      const turn = ++this.#turn;
+      try {
+        const { frame, jpeg } = unpackFrame(await client.call('frame', wish));
+        const bitmap = await createImageBitmap(new Blob([jpeg as BlobPart], { type: 'image/jpeg' }));
+        if (!wish.near) this.#keep(keyOf(wish), bitmap);
+        if (turn < this.#shownTurn) continue; // a later wish was answered first
+        this.#shownTurn = turn;
+        this.#shown({ clip: wish.clip, frame, bitmap, sharp: !wish.near });
+      } catch {
+        // the clip's own message tells what is wrong with it
+      }
     }
+    this.#asking--;
   }
 
   #keep(key: string, bitmap: ImageBitmap): void {
     this.#kept.set(key, bitmap);
-    for (const [oldest, old] of this.#kept) {
+    for (const [oldest] of this.#kept) {
       if (this.#kept.size <= MOST_KEPT) break;
-      this.#kept.delete(oldest);
-      old.close();
+      this.#kept.delete(oldest); // closed by the collector: it may be on the stage
     }
   }
 }

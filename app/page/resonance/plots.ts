@@ -65,6 +65,7 @@ function residualPlot(parts: ResponseParts): Plot {
       u: each.independentU === null ? null : each.independentU * factor,
       name: each.id,
     }));
+  const reach = Math.max(...points.map((each) => Math.abs(each.y) + (each.u ?? 0)), 0) * 1.1 || 1;
   const ends = [curve?.driveHz[0] ?? 0, curve?.driveHz.at(-1) ?? 1];
   return {
     series: [
@@ -73,6 +74,8 @@ function residualPlot(parts: ResponseParts): Plot {
     ],
     xTitle: 'drive frequency, Hz',
     yTitle: `measured minus fit, ${unitText}`,
+    yFrom: -reach,
+    yTo: reach,
     onPoint: (series, index) => {
       const name = series === 1 ? points[index]?.name : undefined;
       if (name !== undefined) parts.onDwell?.(name);

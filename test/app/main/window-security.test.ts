@@ -199,7 +199,7 @@ describe('17: the sender of a call', () => {
     ['openTest', { path: 7 }],
     ['openTest', { path: '/a', more: 1 }],
     ['edit', { edit: { kind: 'run', command: 'rm' } }],
-    ['frame', { clip: 'c', frame: -1, widthPx: 640 }],
+    ['frame', { clip: 'c', frame: -1, widthPx: 640, near: false }],
     ['hello', null],
   ])('%s with %j is refused before any handler sees it', async (name, input) => {
     expect(await call(page(), name, input)).toMatchObject({ ok: false, kind: 'refused' });
