@@ -1,41 +1,12 @@
-import { InputError } from '../errors.ts';
 import type { Warning } from '../numeric/warning.ts';
 import { foldFrequency } from './aliasing.ts';
 import { PHONE_FRAME_RATES_HZ } from './frame-rates.ts';
-
-/** Rates nearer than this fraction are the same rate: 29.97 and 30, a clock a little off. */
-const SAME_RATE = 0.01;
 
 /** Measured and set frequency nearer than this fraction agree; exciters are set to better. */
 const AGREES = 0.01;
 
 /** A clip is slowed down by no more than this. */
 const LARGEST_FACTOR = 40;
-
-/**
- * True seconds per second of the file for a clip captured at `captureFps` and stored at `fileRateHz`.
- *
- * @returns at most 1
- * @throws InputError where captureFps is not a number above 0, or below the file's own rate (that clip would be a time lapse)
- */
-export function slowMotionFactor(captureFps: number, fileRateHz: number): number {
-  if (!(captureFps > 0) || !Number.isFinite(captureFps)) {
-    throw new InputError(
-      `captureFps is ${captureFps}; give the true capture rate in frames/s, or leave it out.`,
-    );
-  }
-  if (captureFps < fileRateHz * (1 - SAME_RATE)) {
-    throw new InputError(
-      `captureFps ${captureFps} is below the file's own ${fileRateHz.toPrecision(4)} frames/s; give the rate at which the camera captured, usually 120 or 240.`,
-    );
-  }
-  return Math.min(1, fileRateHz / captureFps);
-}
-
-/** Frame times in true seconds: the file's, times the factor, from the same zero. */
-export function undoSlowMotion(fileTimesS: Float64Array, factor: number): Float64Array {
-  return fileTimesS.map((t) => t * factor);
-}
 
 /** What the measured frequency says about the time scale of a clip. */
 export interface FrequencyCheck {

@@ -1,33 +1,5 @@
 import { describe, expect, test } from 'vitest';
-import { checkFrequency, slowMotionFactor, undoSlowMotion } from '../../src/camera/slow-motion.ts';
-import { InputError } from '../../src/errors.ts';
-
-describe('slow motion undone', () => {
-  test('240 frames/s stored at 30: one second of file is an eighth of a true second', () => {
-    const factor = slowMotionFactor(240, 30);
-    expect(factor).toBe(0.125);
-    expect(Array.from(undoSlowMotion(Float64Array.of(0, 1 / 30, 2 / 30), factor))).toEqual([
-      0,
-      expect.closeTo(1 / 240, 15),
-      expect.closeTo(2 / 240, 15),
-    ]);
-  });
-
-  test('a clip captured and stored at one rate is left alone, its clock a little off included', () => {
-    expect(slowMotionFactor(60, 60)).toBe(1);
-    expect(slowMotionFactor(30, 30.02)).toBe(1);
-  });
-
-  test.each([
-    [24, 30, /below the file's own 30/],
-    [0, 30, /captureFps is 0/],
-    [Number.NaN, 30, /captureFps is NaN/],
-    [-240, 30, /captureFps is -240/],
-  ])("captureFps %d for a file of %d frames/s is the user's to correct", (capture, file, message) => {
-    expect(() => slowMotionFactor(capture, file)).toThrow(InputError);
-    expect(() => slowMotionFactor(capture, file)).toThrow(message);
-  });
-});
+import { checkFrequency } from '../../src/camera/slow-motion.ts';
 
 describe('measured against set frequency', () => {
   test('equal within a per cent, or within three standard uncertainties, is agreed', () => {
