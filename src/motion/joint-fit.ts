@@ -74,6 +74,7 @@ const LARGEST_RELATIVE_U = 0.03;
 const STARTS_REFINED = 2;
 // A start must take this many noise variances off the residual; refining gains a few times more at most.
 const LEAST_PROMISE = 14;
+const LARGEST_PROMISED_SHARE = 0.2;
 // A natural frequency below this share of the drive frequency is not looked for.
 const SLOWEST_SHARE = 0.2;
 
@@ -125,8 +126,9 @@ function hopeless(
   if (steadyResiduals === undefined) return false;
   let steadySum = 0;
   for (const residual of steadyResiduals) steadySum += residual * residual;
-  const variance = steadySum / (samples.timesS.length - 5);
-  return steadySum - projectedSum(projectModel(model, samples, start), samples) < LEAST_PROMISE * variance;
+  // in a short record the sum of squares is itself only a few variances
+  const share = Math.min(LEAST_PROMISE / (samples.timesS.length - 5), LARGEST_PROMISED_SHARE);
+  return steadySum - projectedSum(projectModel(model, samples, start), samples) < share * steadySum;
 }
 
 /**
