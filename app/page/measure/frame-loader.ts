@@ -3,6 +3,7 @@ import { client } from '../state/bench.ts';
 
 const MOST_KEPT = 60;
 const MOST_ASKED = 2; // one that may be overtaken, and the latest
+const AHEAD = 4; // frames kept ready in the direction of the last step
 const SMALL_PX = 640;
 const SHARPEN_MS = 130; // after the last move of a scrub
 
@@ -33,6 +34,8 @@ export class FrameLoader {
   #asking = 0;
   #turn = 0;
   #shownTurn = 0;
+  #at = 0;
+  #step = 1;
   #wanted: Wish | null = null;
   #sharpen: ReturnType<typeof setTimeout> | null = null;
   #wishedAt = 0;
@@ -46,6 +49,8 @@ export class FrameLoader {
   /** Shows a frame as soon as it can be had; `moving` while more wishes are to be expected. */
   show(clip: string, frame: number, fullWidthPx: number, moving: boolean): void {
     this.#wishedAt = performance.now();
+    this.#step = frame === this.#at ? this.#step : Math.sign(frame - this.#at);
+    this.#at = frame;
     if (this.#sharpen) clearTimeout(this.#sharpen);
     this.#sharpen = null;
     const sharp: Wish = { clip, frame, widthPx: fullWidthPx, near: false };
@@ -54,6 +59,7 @@ export class FrameLoader {
       this.#wanted = null;
       this.#shownTurn = ++this.#turn;
       this.#shown({ clip, frame, bitmap, sharp: true });
+      this.#readAhead(sharp);
     } else if (!moving) this.#want(sharp);
     else {
       this.#want({ ...sharp, widthPx: Math.min(SMALL_PX, fullWidthPx), near: true });
@@ -74,7 +80,9 @@ export class FrameLoader {
 
   async #askOn(): Promise<void> {
     this.#asking++;
+    let settled: Wish | null = null;
     while (this.#wanted) {
+      settled = null;
       const wish: Wish = this.#wanted;
       this.#wanted = null;
       const turn = ++this.#turn;
@@ -85,11 +93,39 @@ export class FrameLoader {
         if (turn < this.#shownTurn) continue; // a later wish was answered first
         this.#shownTurn = turn;
         this.#shown({ clip: wish.clip, frame, bitmap, sharp: !wish.near });
+        if (!wish.near && !this.#wanted) settled = wish;
       } catch {
         // the clip's own message tells what is wrong with it
       }
     }
     this.#asking--;
+    if (settled) this.#readAhead(settled);
+  }
+
+  /** Fetches the next frames in the direction of the last step, as long as nothing else is wished for. */
+  #readAhead({ clip, frame, widthPx }: Wish): void {
+    if (this.#asking > 0 || this.#step === 0) return;
+    for (let ahead = 1; ahead <= AHEAD; ahead++) {
+      const next: Wish = { clip, frame: frame + ahead * this.#step, widthPx, near: false };
+      if (next.frame < 0 || this.#kept.has(keyOf(next))) continue;
+      this.#asking++;
+      client
+        .call('frame', next)
+        .then(async (bytes) => {
+          const { jpeg } = unpackFrame(bytes);
+          this.#keep(
+            keyOf(next),
+            await createImageBitmap(new Blob([jpeg as BlobPart], { type: 'image/jpeg' })),
+          );
+        })
+        .catch(() => undefined) // beyond the end of the clip, or overtaken
+        .finally(() => {
+          this.#asking--;
+          if (this.#wanted) void this.#askOn();
+          else if (this.#at === frame) this.#readAhead({ clip, frame, widthPx, near: false });
+        });
+      return;
+    }
   }
 
   #keep(key: string, bitmap: ImageBitmap): void {
