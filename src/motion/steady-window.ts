@@ -30,6 +30,8 @@ const PARTS: readonly (readonly [number, number])[] = [
   [0.2, 0.8],
   [0, 0.5],
 ];
+// A larger change than this is no slow one: the motion began or stopped within the record.
+const SLOW_CHANGE = 0.2;
 // Wandering above which a part is not worth a closer look.
 const HOPELESS = 0.05;
 
@@ -107,8 +109,10 @@ export function findSteadyWindow(
   if (steady) return whole;
   // a transient that explains everything is there to the end: a part only hides it
   if (whole.model.joint !== null && whole.model.adequate) return whole;
-  // a change that goes on all the time is in every part, only smaller
-  if (whole.finding.kind === 'trend' || whole.finding.kind === 'slide') return whole;
+  // a slow change that goes on all the time is in every part, only smaller
+  const { finding } = whole;
+  if (finding.kind === 'slide' || (finding.kind === 'trend' && Math.abs(finding.change) < SLOW_CHANGE))
+    return whole;
 
   const [first, span] = [samples.timesS[0]!, spanS(samples)];
   for (const [from, to] of PARTS) {

@@ -47,7 +47,7 @@ export function dwellWarnings(facts: WarningFacts): MotionWarning[] {
     if (finding.kind !== 'slide') warn('frequency-differs', sentence);
   }
   if (judged.toneHz !== null) {
-    const sentence = `A steady motion of ${hertz(judged.toneHz)} from another source was taken out; look for it.`;
+    const sentence = `A steady motion of ${Number(judged.toneHz.toPrecision(3))} Hz from another source was taken out; look for it.`;
     warn('other-tone', sentence);
   }
   const bent = facts.harmonics.flatMap(({ value, u }, k) =>

@@ -72,7 +72,7 @@ journey('a marker on a spot without texture is refused at once, and another spot
   await page.getByRole('link', { name: 'Measure' }).click();
   await selectResponse();
   await page.getByRole('button', { name: 'Place anew' }).click();
-  await way.clickPicture([12, 12]);
+  await way.clickPicture([3, 3]);
   await page.getByText(/too near the edge|too little texture|one direction only/).waitFor();
   await page.getByText('not measured').first().waitFor();
   await way.pictures('refused-spot');
