@@ -8,7 +8,7 @@ export interface RegionWish {
   readonly seen: readonly { readonly x: number; readonly y: number }[];
 }
 
-const LEAST_MARGIN_PX = 40; // room for prediction errors and for a swing that the look has missed
+const LEAST_MARGIN_PX = 64; // room for prediction errors and for a swing that the look has missed
 const MARGIN_PER_SPREAD = 0.75; // a look at a few instants sees a part of the swing only
 const WHOLE_FRAME_PX = 640 * 480; // below this the whole frame costs less than looking for a smaller rectangle
 const WORTHWHILE = 0.6; // fraction of the frame that the rectangles may fill before the whole frame is cheaper

@@ -24,7 +24,6 @@ export interface TrackClipJob {
   readonly spec: ClipSpec;
   readonly info: ClipInfo;
   readonly setup: PreparedSetup;
-  readonly sha256: string | null;
   /** Whether to go over the clip once more with templates averaged over it. */
   readonly refine: boolean;
 }
@@ -158,7 +157,7 @@ function factsOf(job: TrackClipJob, stretch: number, undecodedFrames: number): C
     tickS: numerator / denominator / stretch,
     jitterRmsS: jitter === null ? null : jitter / stretch,
     undecodedFrames,
-    sha256: job.sha256,
+    sha256: null,
     fileBytes: info.fileBytes,
   };
 }

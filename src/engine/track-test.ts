@@ -101,14 +101,17 @@ class Tracking {
           prepared.refused.get(refusedResponse.id) ?? 'The response marker cannot be tracked.',
         );
       }
-      const sha256 = await contentHash(info.path, this.context.signal);
+      // hashing waits for the disk, tracking for the decoder: together they cost no more than the longer
+      const hash = contentHash(info.path, this.context.signal);
+      hash.catch(() => undefined);
       const tracks = await trackClip(
-        { spec, info, setup: prepared, sha256, refine: this.options.refine ?? false },
+        { spec, info, setup: prepared, refine: this.options.refine ?? false },
         this.context,
         onTracked,
       );
       return {
         ...tracks,
+        facts: { ...tracks.facts, sha256: await hash },
         warnings: [
           ...tracks.warnings,
           ...(prepared.cautions.get(spec.id) ?? []),
