@@ -4,7 +4,8 @@ import { defineConfig } from 'vitest/config';
 export default defineConfig({
   test: {
     root: fileURLToPath(new URL('../..', import.meta.url)),
-    include: ['test/journeys/*.journey.ts'],
+    // figures are told, not judged: they run when asked for (SPEED=1)
+    include: [process.env['SPEED'] ? 'test/journeys/speed.figures.ts' : 'test/journeys/*.journey.ts'],
     globalSetup: ['test/journeys/build-first.ts'],
     testTimeout: 600_000,
     expect: { poll: { timeout: 30_000, interval: 100 } },

@@ -31,6 +31,8 @@ interface Wish {
 export class FrameLoader {
   readonly #onFrame: (frame: LoadedFrame) => void;
   readonly #kept = new Map<string, ImageBitmap>();
+  /** Frames that could not be had ahead of time, such as those beyond the clip's end: not asked for again and again. */
+  readonly #missing = new Set<string>();
   #asking = 0;
   #turn = 0;
   #shownTurn = 0;
@@ -107,7 +109,7 @@ export class FrameLoader {
     if (this.#asking > 0 || this.#step === 0) return;
     for (let ahead = 1; ahead <= AHEAD; ahead++) {
       const next: Wish = { clip, frame: frame + ahead * this.#step, widthPx, near: false };
-      if (next.frame < 0 || this.#kept.has(keyOf(next))) continue;
+      if (next.frame < 0 || this.#missing.has(keyOf(next)) || this.#kept.has(keyOf(next))) continue;
       this.#asking++;
       client
         .call('frame', next)
@@ -118,7 +120,7 @@ export class FrameLoader {
             await createImageBitmap(new Blob([jpeg as BlobPart], { type: 'image/jpeg' })),
           );
         })
-        .catch(() => undefined) // beyond the end of the clip, or overtaken
+        .catch(() => this.#missing.add(keyOf(next)))
         .finally(() => {
           this.#asking--;
           if (this.#wanted) void this.#askOn();
