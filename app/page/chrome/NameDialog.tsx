@@ -38,7 +38,6 @@ function NameDialog(props: {
         <label class="field">
           {props.label}
           <input
-            // biome-ignore lint/a11y/noAutofocus: the dialog asks for this one text
             autofocus
             value={text}
             maxLength={200}
