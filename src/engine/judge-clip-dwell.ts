@@ -1,9 +1,11 @@
 import type { DwellJudgement, Verdict } from '../motion/dwell-judgement.ts';
 import type { JointFit } from '../motion/joint-fit.ts';
+import type { MotionRecord } from '../motion/motion-record.ts';
 import { judgeDwell } from '../motion/verdict.ts';
 import { type Measured, measured } from '../numeric/measured.ts';
 import type { SineFit } from '../sine/sine-fit.ts';
 import type { DwellSpec } from '../testfile/schema.ts';
+import { inWindow } from './dwell-at-frequency.ts';
 import type { EvaluatedClip } from './evaluate-clips.ts';
 
 /** The steady motion of a dwell as seen, before any correction for filming. */
@@ -73,12 +75,31 @@ function rectangularU(largest: number): number {
   return Math.abs(largest) / Math.sqrt(3);
 }
 
+const STANDS_STILL = 0.02; // of the swing: less than this from the first place is no motion yet
+
+/**
+ * The record without the time before anything moves, which no sine and no transient describes. A motion that begins at
+ * its turning point loses a few frames, which costs nothing.
+ */
+function fromOnset(record: MotionRecord): readonly [number, number] {
+  const { timesS, displacementMm } = record;
+  const seen = displacementMm.filter(Number.isFinite);
+  const swing =
+    seen.reduce((most, value) => Math.max(most, value), -Infinity) -
+    seen.reduce((least, value) => Math.min(least, value), Infinity);
+  const first = seen[0] ?? 0;
+  const moved = displacementMm.findIndex((value) => Math.abs(value - first) > STANDS_STILL * swing);
+  return [timesS[Math.max(0, moved - 1)] ?? 0, timesS.at(-1) ?? 0];
+}
+
 /** Judges the dwell in the window given, or finds its steady window, and fits it. */
 export function judgeClipDwell(clip: EvaluatedClip, spec: DwellSpec): JudgedDwell | UnjudgedDwell {
-  const judgement = judgeDwell(clip.response, {
+  const moving = fromOnset(clip.response);
+  const part = (record: MotionRecord): MotionRecord => (spec.window ? record : inWindow(record, moving));
+  const judgement = judgeDwell(part(clip.response), {
     driveHz: spec.driveHz ?? null,
     ...(spec.window ? { window: spec.window } : {}),
-    ...(clip.drive ? { driveRecord: clip.drive } : {}),
+    ...(clip.drive ? { driveRecord: part(clip.drive) } : {}),
   });
   const { frequencyHz, windowS, verdict, lostFrames, sentence } = judgement;
   const sine = steadySine(judgement);
