@@ -1,4 +1,4 @@
-import { unknownFrequencyWarning } from '../camera/aliasing.ts';
+import { judgeAlias, unknownFrequencyWarning } from '../camera/aliasing.ts';
 import { judgeShake, stillRmsPx } from '../camera/camera-shake.ts';
 import { smearWarning } from '../camera/marker-smear.ts';
 import { checkFrequency } from '../camera/slow-motion.ts';
@@ -30,10 +30,15 @@ export function frequencyWarnings(clip: EvaluatedClip, spec: DwellSpec, judged: 
 
 const CLEAR_MOTION = 10; // amplitude over its uncertainty from which a motion at another frequency is no accident
 
-/** Where nothing moves at the set frequency: a clear motion at another one, and what it may mean (slow motion not stated). */
+/**
+ * Why nothing can be fitted at the set frequency: the frame rate folds it onto standstill, or a clear motion at another
+ * frequency shows that the clip's time scale is not what it says (slow motion not stated).
+ */
 export function elsewhere(clip: EvaluatedClip, spec: DwellSpec): string | null {
   const rate = clip.tracks.facts.frameRate;
   if (spec.driveHz === undefined || !(spec.driveHz > 0) || rate === null) return null;
+  const alias = judgeAlias(spec.driveHz, rate, clip.tracks.facts.durationS);
+  if (alias.kind === 'refused' && alias.warning) return alias.warning.sentence;
   const { timesS, displacementMm } = spec.window ? inWindow(clip.response, spec.window) : clip.response;
   const free = fitSine(timesS, displacementMm);
   if (!free || free.frequencyHz <= 0 || free.amplitude < CLEAR_MOTION * free.amplitudeU) return null;
